@@ -1,0 +1,85 @@
+"""The command line: sub-commands, exit statuses, errors in one line."""
+
+import argparse
+import importlib
+import os
+import sys
+from collections.abc import Sequence
+from typing import Final, NoReturn
+
+from containment.errors import ContainmentError
+
+__all__ = ["main"]
+
+SUBCOMMANDS: Final = {
+    # name: (module with add_arguments(parser) and run(options) -> int, one line of help)
+    "liquid": ("containment.faces.command_liquid", "verdict for a liquid layer in an upside-down vessel"),
+    "grains": ("containment.faces.command_grains", "verdict for a granular bed in a shaken vessel"),
+    "window": ("containment.faces.command_window", "the holding window over frequency, as a chart or rows"),
+    "study": ("containment.faces.command_study", "a parameter study from a plan"),
+    "table": ("containment.faces.command_table", "the property tables, or one entry with its sources"),
+}
+
+_EXITS: Final = "exit status: 0 held, 1 not held, 2 bad input, 3 marginal or not proven, 4 internal failure"
+
+
+class _Parser(argparse.ArgumentParser):
+    """An argument parser whose errors are one clear line and exit status 2."""
+
+    def error(self, message: str) -> NoReturn:
+        """Print one line on stderr and leave with status 2."""
+        sys.stderr.write(f"{self.prog}: {message}\n")
+        raise SystemExit(2)
+
+
+def main(arguments: Sequence[str] | None = None) -> int:
+    """Run the command line and return its exit status."""
+    arguments = list(sys.argv[1:] if arguments is None else arguments)
+    chosen = arguments[0] if arguments else ""
+    parser = _Parser(
+        prog="containment",
+        description="Does the liquid, or the bed, stay in the vessel while it is shaken?",
+        epilog=_EXITS,
+        formatter_class=argparse.RawDescriptionHelpFormatter,
+    )
+    parser.add_argument("--version", action="version", version=_version(chosen))
+    commands = parser.add_subparsers(dest="command", metavar="COMMAND", required=True)
+    for name, (module, line) in SUBCOMMANDS.items():
+        sub = commands.add_parser(
+            name, help=line, description=line, epilog=_EXITS, formatter_class=argparse.RawDescriptionHelpFormatter,
+            allow_abbrev=False,
+        )
+        if name == chosen:  # only the chosen sub-command's module is imported
+            importlib.import_module(module).add_arguments(sub)
+    options = parser.parse_args(arguments)
+    return _run(SUBCOMMANDS[options.command][0], options)
+
+
+def _run(module: str, options: argparse.Namespace) -> int:
+    try:
+        status: int = importlib.import_module(module).run(options)
+        sys.stdout.flush()
+    except ContainmentError as error:
+        sys.stderr.write(f"containment: {error}\n")
+        return 2
+    except KeyboardInterrupt:
+        return 130
+    except BrokenPipeError:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing more can be said to a closed pipe
+        return 141
+    except Exception as error:
+        if os.environ.get("CONTAINMENT_TRACEBACK"):
+            raise
+        sys.stderr.write(
+            f"containment: internal failure: {type(error).__name__}: {error} (set CONTAINMENT_TRACEBACK=1 for more)\n"
+        )
+        return 4
+    return status
+
+
+def _version(chosen: str) -> str:
+    if chosen != "--version":
+        return ""
+    from importlib.metadata import version
+
+    return f"containment {version('containment')}"

@@ -1,0 +1,1 @@
+"""What is given: liquids, vessels, motions, drives, tables; units are checked here."""

@@ -1,0 +1,1 @@
+"""From physics to a verdict: holding window, limits, cautions."""
