@@ -1,0 +1,355 @@
+"""Lower and upper holding acceleration over all modes of a vessel, at many frequencies at once.
+
+At a growth allowance sigma >= 0 a mode that falls at rest is held from its first harmonic root (lower side); any mode
+breaks up into waves at its first subharmonic root or at the next harmonic one, whichever comes first (upper side).
+The layer is held between the largest lower root and the smallest upper one.
+
+Only modes that can matter are evaluated. A mode is left out where its continued fraction is shown to have no root
+(Worpitzky) below an acceleration at which some other mode has already broken up; what is needed for that follows from
+`Layer.smallest_coefficient` and from abs(A(s)) >= (2/rho) Z0 abs(s), both proven for all s with Re s >= 0.
+"""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Final, Protocol
+
+import numpy as np
+import numpy.typing as npt
+
+from containment.errors import NotComputableError
+from containment.physics.crossings import first_crossing
+from containment.physics.hill import Half, rows_needed
+from containment.physics.wavenumbers import Spectrum
+
+__all__ = ["AMPLITUDE_BOUND", "BoundedLayer", "Edges", "first_roots", "hold_edges", "matters"]
+
+Real = npt.NDArray[np.float64]
+Complex = npt.NDArray[np.complex128]
+Flags = npt.NDArray[np.bool_]
+
+AMPLITUDE_BOUND: Final = 0.06
+"""Largest amplitude (zero to peak) that is searched, m: beyond what shaking machines have."""
+
+_NODES_PER_E_FOLD: Final = 40
+"""Density of wavenumber nodes where every wavenumber counts; extremes are refined afterwards."""
+
+_CHUNK: Final = 6000
+
+
+class BoundedLayer(Protocol):
+    """What the edges need to know of a layer: see `containment.physics.dispersion.Layer`."""
+
+    density: float
+
+    def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
+        """Return A(s; k)."""
+        ...
+
+    def stiffness(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return the static stiffness."""
+        ...
+
+    def static_impedance(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return Z(0; k)."""
+        ...
+
+    def smallest_coefficient(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return a lower bound of abs(A) over Re s >= 0."""
+        ...
+
+
+@dataclass(frozen=True, slots=True)
+class Edges:
+    """Edges of the holding window; arrays of one value a frequency.
+
+    Attributes
+    ----------
+    frequency : array
+        Hz.
+    lower, upper : array
+        m/s^2; lower is 0 where nothing needs holding and infinite where nothing within the amplitude bound holds;
+        upper is infinite where no wave breaks up within the amplitude bound.
+    lower_wavenumber, upper_wavenumber : array
+        1/m, of the mode that binds; not-a-number where there is none.
+    upper_subharmonic : array of bool
+        Whether the wave at the upper side answers at half the drive frequency.
+    """
+
+    frequency: Real
+    lower: Real
+    upper: Real
+    lower_wavenumber: Real
+    upper_wavenumber: Real
+    upper_subharmonic: Flags
+
+
+def first_roots(
+    layer: BoundedLayer,
+    k: Real,
+    w: Real,
+    growth: float,
+    stop: Real,
+    *,
+    subharmonic: bool,
+    start: Real | None = None,
+    extra_rows: int = 0,
+) -> Real:
+    """Return the first root in acceleration of each case (k, w) up to `stop`, or infinity.
+
+    Parameters
+    ----------
+    k, w : array, shape (cases,)
+        Wavenumber, 1/m, and angular frequency, rad/s.
+    growth : float
+        Growth rate of the mode at the root, 1/s, >= 0.
+    stop : array, shape (cases,)
+        End of the search, m/s^2.
+    subharmonic : bool
+        Which tongue.
+    start : array, optional
+        Where to start; by default where the continued fraction is proven to be free of roots.
+    extra_rows : int
+        Rows added to the usual truncation, to show that it has converged.
+    """
+    result = np.full(len(k), np.inf)
+    rows = 2.0 * np.sqrt(stop * k) / w
+    order = np.argsort(rows, kind="stable")
+    for first in range(0, len(order), _CHUNK):
+        part = order[first : first + _CHUNK]
+        count = rows_needed((0.5 * float(rows[part[-1]])) ** 2, 1.0) + extra_rows
+        half = Half.of(layer, k[part], w[part], growth, count, subharmonic=subharmonic)
+        begin = half.root_free_below() if start is None else start[part]
+        near = np.flatnonzero(begin < stop[part])
+        if len(near):
+            chosen = part[near]
+            result[chosen] = first_crossing(
+                half.take(near) if len(near) < len(part) else half,
+                begin[near],
+                stop[chosen],
+                turns=np.sqrt(k[chosen]) / w[chosen],
+            )
+    return result
+
+
+def matters(layer: BoundedLayer, k: Real, w: Real, acceleration: Real) -> Flags:
+    r"""Return which wavenumbers could have an exponent with Re s >= 0 at an acceleration; the three broadcast.
+
+    False is a proof, for every s = sigma + i y with sigma >= 0. By Floquet shift abs(y) <= w/2. With m the bound of
+    `smallest_coefficient` and zeta = (2/rho) Z0, abs(A_n) >= max(m, zeta abs(s_n)) and abs(s_n) >= abs(n w + y). Hence
+
+        abs(A_0 A_{+-1}) >= min over abs(y) of max(m, zeta abs(y)) zeta (w - abs(y)) = m zeta (w - min(m/zeta, w/2)),
+        abs(A_n A_{n+1}) >= zeta^2 (3/4) w^2 for the other neighbours,
+
+    and Worpitzky's theorem excludes a solution while 4 a^2 is below both. A deep layer has Z0 = 2 mu k and m rising
+    with k, so once k h >= 3 and the test fails to bind, no larger k matters either.
+    """
+    m = layer.smallest_coefficient(k)
+    zeta = 2.0 / layer.density * layer.static_impedance(k)
+    nearest = m * zeta * (w - np.minimum(m / zeta, 0.5 * w))
+    result: Flags = ~(np.minimum(nearest, 0.75 * (zeta * w) ** 2) > 4.0 * acceleration**2)
+    # diagonal dominance needs no pairs
+    return result & ~(m > 2.0 * acceleration)
+
+
+def hold_edges(
+    layer: BoundedLayer,
+    spectrum: Spectrum,
+    frequency: npt.ArrayLike,
+    *,
+    growth: float = 0.0,
+    amplitude_bound: float = AMPLITUDE_BOUND,
+    capillary_wavenumber: float,
+    depth: float,
+) -> Edges:
+    """Return the edges of the holding window at given frequencies.
+
+    Parameters
+    ----------
+    layer : BoundedLayer
+        The layer.
+    spectrum : Spectrum
+        The vessel's wavenumbers.
+    frequency : array_like, shape (frequencies,)
+        Hz.
+    growth : float
+        Allowed growth rate, 1/s, >= 0.
+    amplitude_bound : float
+        Largest amplitude that is searched, m.
+    capillary_wavenumber, depth : float
+        1/l_c (1/m) and depth (m) of the layer: where the wavenumber nodes start and how far they reach.
+
+    Raises
+    ------
+    NotComputableError
+        No wavenumber can be found above which waves provably do not matter.
+    """
+    f = np.atleast_1d(np.asarray(frequency, dtype=np.float64))
+    w = 2.0 * np.pi * f
+    cap = amplitude_bound * w * w
+    nodes = _wavenumber_nodes(layer, spectrum, w, cap, growth, capillary_wavenumber, depth)
+    k, iw, ik, ceiling = nodes.k, nodes.case_w, nodes.case_k, nodes.ceiling
+    kk, ww, top = k[ik], w[iw], ceiling[iw]
+
+    # the static sign decides which modes need holding; only they have a lower side
+    falls = layer.coefficient(growth, k).real < 0.0
+    fall_k = np.flatnonzero(falls)
+    lw, lk = np.repeat(np.arange(len(w)), len(fall_k)), np.tile(fall_k, len(w))
+    low = first_roots(layer, k[lk], w[lw], growth, cap[lw], subharmonic=False)
+    lower, lower_k = _extreme(low, lw, lk, len(w), np.maximum)
+    lower_wave = np.where(lower_k >= 0, k[lower_k], np.nan)
+    if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
+        lower[:], lower_wave[:] = np.inf, 0.0  # the acceleration needed grows without bound as k falls
+
+    z0 = 2.0 / layer.density * layer.static_impedance(k)
+    upper, upper_wave = nodes.breaks.copy(), nodes.breaks_k.copy()
+    upper_sub = np.isfinite(upper)
+
+    def note(root: Real, at_w: npt.NDArray[np.intp], at_k: Real, subharmonic: bool) -> None:
+        best, where = _extreme(root, at_w, np.arange(len(root)), len(w), np.minimum)
+        better = np.flatnonzero((best < upper) & (where >= 0))
+        upper[better] = best[better]
+        upper_wave[better] = at_k[where[better]]
+        upper_sub[better] = subharmonic
+
+    sub = np.flatnonzero(_subharmonic_possible(nodes.first_sub, z0[ik], ww, top))
+    note(first_roots(layer, kk[sub], ww[sub], growth, top[sub], subharmonic=True), iw[sub], kk[sub], True)
+    stable = np.flatnonzero(~falls[ik])
+    static = np.abs(layer.coefficient(growth, k).real)
+    possible = np.minimum(static[ik[stable]] * z0[ik[stable]] * ww[stable], 2.0 * (z0[ik[stable]] * ww[stable]) ** 2)
+    stable = stable[possible <= 4.0 * np.minimum(top[stable], upper[iw[stable]]) ** 2]
+    stop = np.minimum(top, upper[iw])
+    note(first_roots(layer, kk[stable], ww[stable], growth, stop[stable], subharmonic=False), iw[stable], kk[stable], False)
+    # harmonic waves of the modes that fall at rest: the next root above the one that holds them
+    ceiling_now = np.minimum(upper, cap)
+    again = np.flatnonzero(np.isfinite(low) & (low < ceiling_now[lw]))
+    if len(again):
+        begin = low[again] * (1.0 + 1e-7)
+        second = first_roots(
+            layer, k[lk[again]], w[lw[again]], growth, ceiling_now[lw[again]], subharmonic=False, start=begin
+        )
+        note(second, lw[again], k[lk[again]], False)
+
+    edges = Edges(f, lower, upper, lower_wave, upper_wave, upper_sub)
+    if np.any(upper_wave >= spectrum.continuous_from) or np.any(lower_wave >= spectrum.continuous_from):
+        edges = _refined_in_wavenumber(layer, spectrum, edges, w, cap, growth)
+    edges.upper[edges.upper > cap] = np.inf
+    return edges
+
+
+@dataclass(frozen=True, slots=True)
+class _Nodes:
+    """Wavenumbers and the cases (frequency, wavenumber) that can matter below the ceiling of each frequency.
+
+    `breaks` is the subharmonic root of one likely mode of wavenumber `breaks_k`, infinite where it has none; the
+    ceiling is the smaller of it and of the amplitude bound.
+    """
+
+    k: Real
+    case_w: npt.NDArray[np.intp]
+    case_k: npt.NDArray[np.intp]
+    ceiling: Real
+    breaks: Real
+    breaks_k: Real
+    first_sub: Complex
+
+
+def _wavenumber_nodes(
+    layer: BoundedLayer, spectrum: Spectrum, w: Real, cap: Real, growth: float, capillary: float, depth: float
+) -> _Nodes:
+    """Find wavenumbers that reach past every one that matters, and an acceleration at which some mode breaks up."""
+    reach = 4.0 * max(capillary, 3.0 / depth if np.isfinite(depth) else 0.0)
+    breaks, breaks_k = np.full(len(w), np.inf), np.full(len(w), np.nan)
+    for _ in range(40):
+        k = _nodes_up_to(spectrum, reach, min(capillary, 1.0 / depth))
+        first = layer.coefficient(growth + 0.5j * w[:, None], k[None, :])
+        best = np.argmin(np.abs(first), axis=1)
+        size = np.abs(first)[np.arange(len(w)), best]
+        stop = np.minimum(cap, 4.0 * size)
+        root = first_roots(layer, k[best], w, growth, stop, subharmonic=True)
+        lower_root = root < breaks
+        breaks, breaks_k = np.where(lower_root, root, breaks), np.where(lower_root, k[best], breaks_k)
+        ceiling = np.minimum(cap, breaks)
+        needed = matters(layer, k[None, :], w[:, None], ceiling[:, None])
+        if not needed[:, -1].any() and (not np.isfinite(depth) or k[-1] * depth >= 3.0):
+            case_w, case_k = np.nonzero(needed)
+            return _Nodes(k, case_w, case_k, ceiling, breaks, breaks_k, first[needed])
+        reach *= 2.0
+        if reach > 1e8:
+            break
+    raise NotComputableError(
+        "no wavenumber was found above which waves provably do not matter: the surface tension or the viscosity is too "
+        "small for this theory at these frequencies"
+    )
+
+
+def _nodes_up_to(spectrum: Spectrum, reach: float, slowest: float) -> Real:
+    start = spectrum.continuous_from or 1e-3 * slowest
+    if reach <= start:
+        k = spectrum.discrete
+        return k[: max(np.searchsorted(k, reach) + 1, 12)]
+    count = int(_NODES_PER_E_FOLD * np.log(reach / start)) + 2
+    return np.concatenate([spectrum.discrete, start * np.exp(np.arange(count) / _NODES_PER_E_FOLD)])
+
+
+def _subharmonic_possible(first: Complex, z0: Real, w: Real, ceiling: Real) -> Flags:
+    """Return where a subharmonic root below the ceiling is not excluded by the first coefficient alone."""
+    size = np.abs(first)
+    least = np.minimum(np.minimum(size, 1.5 * z0 * w) * size, 3.75 * (z0 * w) ** 2)
+    result: Flags = least <= 4.0 * ceiling * ceiling
+    return result
+
+
+def _extreme(
+    values: Real, at_w: npt.NDArray[np.intp], label: npt.NDArray[np.intp], count: int, pick: np.ufunc
+) -> tuple[Real, npt.NDArray[np.intp]]:
+    """Return the largest (or smallest) value of each frequency and the label of the case that has it, -1 for none."""
+    best = np.full(count, 0.0 if pick is np.maximum else np.inf)
+    pick.at(best, at_w, values)
+    which = np.full(count, -1, dtype=np.intp)
+    hit = values == best[at_w]
+    which[at_w[hit]] = label[hit]
+    return best, which
+
+
+def _refined_in_wavenumber(
+    layer: BoundedLayer, spectrum: Spectrum, edges: Edges, w: Real, cap: Real, growth: float
+) -> Edges:
+    """Zoom in on the binding wavenumber where every wavenumber counts."""
+    start = spectrum.continuous_from
+    step = 1.0 / _NODES_PER_E_FOLD
+
+    def zoom(wave: Real, value: Real, roots: Callable[[Real, Real, Real], Real], sign: float) -> None:
+        some = np.flatnonzero((wave >= start) & (wave > 0.0) & np.isfinite(value))
+        spread = step
+        while len(some) and spread > 1e-7:
+            offsets = np.linspace(-spread, spread, 9)
+            k = np.maximum(wave[some][:, None] * np.exp(offsets), start)
+            ww = np.repeat(w[some], 9)
+            stop = np.minimum(np.repeat(value[some] * 1.5, 9), np.repeat(cap[some], 9))
+            found = roots(k.ravel(), ww, stop).reshape(-1, 9)
+            if sign < 0.0:
+                found = np.where(np.isfinite(found), found, -np.inf)
+            pick = np.argmin(sign * found, axis=1)
+            rows = np.arange(len(some))
+            better = sign * found[rows, pick] < sign * value[some]
+            value[some[better]] = found[rows, pick][better]
+            wave[some[better]] = k[rows, pick][better]
+            spread /= 4.0
+
+    for subharmonic in (True, False):
+        mine = edges.upper_subharmonic == subharmonic
+        wave = np.where(mine, edges.upper_wavenumber, np.nan)
+        value = edges.upper.copy()
+        zoom(
+            wave, value,
+            lambda k, ww, stop, s=subharmonic: first_roots(layer, k, ww, growth, stop, subharmonic=s),  # type: ignore[misc]
+            1.0,
+        )
+        edges.upper[mine] = value[mine]
+        edges.upper_wavenumber[mine] = wave[mine]
+    zoom(
+        edges.lower_wavenumber, edges.lower,
+        lambda k, ww, stop: first_roots(layer, k, ww, growth, stop, subharmonic=False),
+        -1.0,
+    )
+    return edges
