@@ -1,0 +1,192 @@
+"""One case to be judged: liquid, vessel and growth allowance, turned into the arrays that the physics takes."""
+
+import math
+from dataclasses import dataclass
+from functools import cached_property
+from typing import Any, Final
+
+import numpy as np
+import numpy.typing as npt
+
+from containment.constants import STANDARD_GRAVITY
+from containment.errors import InputError
+from containment.given.liquid import Liquid
+from containment.given.quantities import si_value
+from containment.given.vessel import Annulus, Box, Cylinder, Slot, Vessel
+from containment.physics import wavenumbers
+from containment.physics.dispersion import Layer
+from containment.physics.edges import AMPLITUDE_BOUND, Edges, hold_edges
+from containment.physics.floquet import static_growth_rate
+
+__all__ = ["Allowance", "Case", "Unshaken", "allowance", "spectrum_of"]
+
+Real = npt.NDArray[np.float64]
+
+_UNEVENNESS: Final = 1e-4
+"""Assumed initial unevenness of the surface, m, where none is given (common practice: a tenth of a millimetre)."""
+_UNEVENNESS_OF_DEPTH: Final = 0.01
+_BEARABLE_OF_DEPTH: Final = 0.1
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Allowance:
+    """What the process can bear.
+
+    Attributes
+    ----------
+    dwell : float or None
+        Time upside-down, s; None for ever.
+    unevenness : float
+        Initial unevenness of the surface, m.
+    amplification : float
+        Factor by which it may grow within the dwell.
+    """
+
+    dwell: float | None
+    unevenness: float
+    amplification: float
+
+    @property
+    def growth(self) -> float:
+        """Allowed growth rate, 1/s: ln(amplification) / dwell, 0 for ever."""
+        return 0.0 if self.dwell is None else math.log(self.amplification) / self.dwell
+
+
+def allowance(*, depth: float, dwell: Any = None, unevenness: Any = None, amplification: Any = None) -> Allowance:
+    """Return the allowance from what is given, the rest assumed from the depth (m).
+
+    The unevenness is taken as 0.1 mm or a hundredth of the depth, whichever is less, and the process is taken to bear
+    a surface that is out of level by a tenth of the depth; the amplification is their ratio.
+
+    Raises
+    ------
+    InputError
+        A dwell that is not positive, an unevenness not below the depth, an amplification not above 1.
+    """
+    seconds = None if dwell is None else si_value(dwell, "time", "dwell", least=1e-3, most=1e10)
+    uneven = min(_UNEVENNESS, _UNEVENNESS_OF_DEPTH * depth)
+    if unevenness is not None:
+        uneven = si_value(unevenness, "length", "unevenness", above=0.0, most=0.5 * depth)
+    if amplification is not None:
+        factor = si_value(amplification, "ratio", "amplification", above=1.0, most=1e6)
+    else:
+        factor = _BEARABLE_OF_DEPTH * depth / uneven
+        if not factor > 1.0:
+            raise InputError(
+                f"unevenness: {uneven:g} m is not below a tenth of the depth, {0.1 * depth:g} m; give a smaller one, or "
+                "the amplification that the process can bear"
+            )
+    return Allowance(dwell=seconds, unevenness=uneven, amplification=factor)
+
+
+def spectrum_of(vessel: Vessel) -> wavenumbers.Spectrum:
+    """Return the wavenumbers of a vessel."""
+    match vessel:
+        case Cylinder():
+            return wavenumbers.cylinder(0.5 * vessel.diameter)
+        case Box():
+            return wavenumbers.box(vessel.width, vessel.length)
+        case Annulus():
+            return wavenumbers.annulus(0.5 * vessel.inner_diameter, 0.5 * vessel.outer_diameter)
+        case Slot():
+            return wavenumbers.slot(vessel.width)
+    return wavenumbers.unbounded()
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Unshaken:
+    """The layer without shaking.
+
+    Attributes
+    ----------
+    growth_rate : float
+        Largest growth rate over the modes, 1/s; 0 where the surface tension alone holds the layer.
+    wavenumber : float or None
+        Of the fastest mode, 1/m.
+    time_to_spill : float or None
+        ln(h / unevenness) / growth rate, s; None where nothing grows.
+    """
+
+    growth_rate: float
+    wavenumber: float | None
+    time_to_spill: float | None
+
+
+@dataclass(frozen=True)
+class Case:
+    """A liquid in a vessel, with what the process can bear."""
+
+    liquid: Liquid
+    vessel: Vessel
+    allowance: Allowance
+    amplitude_bound: float = AMPLITUDE_BOUND
+
+    @cached_property
+    def layer(self) -> Layer:
+        """The layer, for the physics."""
+        return Layer(
+            density=self.liquid.density,
+            viscosity=self.liquid.viscosity,
+            surface_tension=self.liquid.surface_tension,
+            depth=self.vessel.depth,
+        )
+
+    @cached_property
+    def spectrum(self) -> wavenumbers.Spectrum:
+        """The vessel's wavenumbers."""
+        return spectrum_of(self.vessel)
+
+    @property
+    def capillary_wavenumber(self) -> float:
+        """1 / l_c, 1/m; infinite without surface tension."""
+        if self.liquid.surface_tension == 0.0:
+            return math.inf
+        return math.sqrt(self.liquid.density * STANDARD_GRAVITY / self.liquid.surface_tension)
+
+    @property
+    def product_mass(self) -> float | None:
+        """Mass of the layer, kg; None where the vessel has no end."""
+        area = self.vessel.area
+        return None if area is None else area * self.vessel.depth * self.liquid.density
+
+    def edges(self, frequency: npt.ArrayLike, *, growth: float | None = None) -> Edges:
+        """Return the edges of the window at given frequencies (Hz), for the allowance or another growth rate."""
+        if self.liquid.surface_tension == 0.0:
+            raise InputError(
+                "surface tension: 0 N/m is not allowed here; without it every short wave falls and no finite drive holds"
+            )
+        return hold_edges(
+            self.layer,
+            self.spectrum,
+            frequency,
+            growth=self.allowance.growth if growth is None else growth,
+            amplitude_bound=self.amplitude_bound,
+            capillary_wavenumber=self.capillary_wavenumber,
+            depth=self.vessel.depth,
+        )
+
+    @cached_property
+    def unshaken(self) -> Unshaken:
+        """What the layer does without shaking: the fastest of all its modes."""
+        top = self.capillary_wavenumber
+        k = self.spectrum.discrete
+        k = k[k < top]
+        start = self.spectrum.continuous_from
+        if start < top:
+            k = np.concatenate([k, np.geomspace(start or 1e-4 * min(top, 1.0 / self.vessel.depth), top, 200)])
+        if not len(k):
+            return Unshaken(growth_rate=0.0, wavenumber=None, time_to_spill=None)
+        rate = static_growth_rate(self.layer, k)
+        best = int(np.argmax(rate))
+        fastest, at = float(rate[best]), float(k[best])
+        spread = 0.1
+        while at > start and spread > 1e-9:
+            near = np.clip(at * np.exp(np.linspace(-spread, spread, 21)), start, top)
+            rate = static_growth_rate(self.layer, near)
+            if rate.max() >= fastest:
+                fastest, at = float(rate.max()), float(near[np.argmax(rate)])
+            spread /= 8.0
+        if not fastest > 0.0:
+            return Unshaken(growth_rate=0.0, wavenumber=None, time_to_spill=None)
+        time = math.log(self.vessel.depth / self.allowance.unevenness) / fastest
+        return Unshaken(growth_rate=fastest, wavenumber=at, time_to_spill=time)
