@@ -17,7 +17,7 @@ Deep layer: Z -> mu k p1 / (2 + x). Quasi-steady: Z(0) = 2 mu k (cosh 2kh + 1 + 
 """
 
 from dataclasses import dataclass
-from typing import Any, Final
+from typing import Final
 
 import numpy as np
 import numpy.typing as npt
@@ -31,6 +31,9 @@ Complex = npt.NDArray[np.complex128]
 
 _SERIES_BELOW: Final = 0.3
 """Below this |(q + k) h| the denominator comes from its series: the closed form loses 12 digits at 1e-6."""
+
+_DEEP_FROM: Final = 20.0
+"""From this k h on the base is not felt: what it adds is of relative size (k h)^2 exp(-2 k h) < 2e-15."""
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -79,14 +82,14 @@ class Layer:
 
     def impedance(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
         """Return Z(s; k), Pa s/m, for complex s (1/s) and wavenumber k (1/m); the two broadcast."""
-        return self._impedance(np.asarray(s, np.complex128), np.asarray(wavenumber, np.float64))[0]
+        k = np.asarray(wavenumber, np.float64)
+        return self._impedance(np.asarray(s, np.complex128), k)
 
     def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
         """Return A(s; k), m/s^2, for complex s (1/s) and wavenumber k (1/m); the two broadcast."""
         s = np.asarray(s, np.complex128)
         k = np.asarray(wavenumber, np.float64)
-        result = self._impedance(s, k)[0]
-        result *= s
+        result = self._impedance(s, k) * s
         result += self.stiffness(k)
         result *= 2.0 / self.density
         return result
@@ -95,22 +98,19 @@ class Layer:
         """Return A(s; k) and dA/ds."""
         s = np.asarray(s, np.complex128)
         k = np.asarray(wavenumber, np.float64)
-        z, slope = self._impedance(s, k, slope=True)
-        assert slope is not None
+        z, slope = self._impedance_and_slope(s, k)
         factor = 2.0 / self.density
         return factor * (self.stiffness(k) + s * z), factor * (z + s * slope)
 
     def static_impedance(self, wavenumber: npt.ArrayLike) -> Real:
         """Return Z(0; k), Pa s/m: the resistance of the layer to slow motion."""
         k = np.asarray(wavenumber, np.float64)
-        return np.ascontiguousarray(self._impedance(np.zeros(k.shape, np.complex128), k)[0].real)
+        return np.ascontiguousarray(self._impedance(np.zeros(k.shape, np.complex128), k).real)
 
     def inertia(self, wavenumber: npt.ArrayLike) -> Real:
         """Return dZ/ds at s = 0, kg/m^2: rho times the squared norm of the slow velocity field of unit surface speed."""
         k = np.asarray(wavenumber, np.float64)
-        slope = self._impedance(np.zeros(k.shape, np.complex128), k, slope=True)[1]
-        assert slope is not None
-        return np.ascontiguousarray(slope.real)
+        return np.ascontiguousarray(self._impedance_and_slope(np.zeros(k.shape, np.complex128), k)[1].real)
 
     def smallest_coefficient(self, wavenumber: npt.ArrayLike) -> Real:
         r"""Return a proven lower bound of abs(A(s; k)), m/s^2, over all s with Re s >= 0.
@@ -149,75 +149,118 @@ class Layer:
         result: Real = w * np.sqrt(2.0 * driving / (k * np.tanh(k * self.depth)))
         return result
 
-    def _impedance(self, s: Complex, k: Real, *, slope: bool = False) -> tuple[Complex, Complex | None]:
+    def _impedance(self, s: Complex, k: Real) -> Complex:
+        deep = k * self.depth >= _DEEP_FROM
+        if k.ndim == 1 and s.ndim >= 1 and deep.any() and not deep.all():
+            # deep modes need no exponentials, which is most of the work
+            shape = np.broadcast_shapes(s.shape, k.shape)
+            whole = np.broadcast_to(s, shape)
+            result = np.empty(shape, np.complex128)
+            for part in (np.flatnonzero(deep), np.flatnonzero(~deep)):
+                result[..., part] = self._impedance(whole[..., part], k[part])
+            return result
+        x = s / ((self.viscosity / self.density) * k * k)
+        x /= 1.0 + np.sqrt(1.0 + x)
+        two = x + 2.0
+        p1 = x + 4.0
+        p1 *= x
+        p1 += 8.0
+        p1 *= x
+        p1 += 4.0
+        if deep.all():
+            p1 *= self.viscosity * k
+            p1 /= two
+            return p1
+        kh = k * self.depth
+        e = np.exp(-kh)
+        u = x * kh
+        eu = np.exp(-u)
+        big_g = _decay_quotient(u, eu)
+        big_g *= e * kh
+        both = eu * (e * e)
+        squared = both * both
+        p4 = p1 * x
+        p4 += 8.0 * x
+        p4 += 8.0
+        numerator = p1 * (squared + 1.0)
+        numerator += 2.0 * both * (p1 + 2.0 * x * x)
+        numerator += two * p4 * big_g * big_g
+        denominator = 1.0 - squared
+        denominator -= two * big_g * (e * (1.0 + eu))
+        shallow = np.abs(two * kh) < _SERIES_BELOW
+        if shallow.any():
+            denominator = np.where(shallow, _shallow_denominator(two * kh, u, both)[0], denominator)
+        denominator *= two
+        numerator /= denominator
+        numerator *= self.viscosity * k
+        return numerator
+
+    def _impedance_and_slope(self, s: Complex, k: Real) -> tuple[Complex, Complex]:
         nu = self.viscosity / self.density
         r = np.sqrt(1.0 + s / (nu * k * k))
         x = (s / (nu * k * k)) / (1.0 + r)
         two = 2.0 + x
         p1 = ((x + 4.0) * x + 8.0) * x + 4.0
+        p1_x = (3.0 * x + 8.0) * x + 8.0
         scale = self.viscosity * k
-        if np.isinf(self.depth):
+        by_s = 1.0 / (2.0 * r * nu * k * k)
+        if np.all(k * self.depth >= _DEEP_FROM):
             z = scale * p1 / two
-            if not slope:
-                return z, None
-            by_x = scale * ((3.0 * x + 8.0) * x + 8.0 - p1 / two) / two
-            return z, by_x / (2.0 * r * nu * k * k)
+            return z, (scale * p1_x - z) / two * by_s
         kh = k * self.depth
         e = np.exp(-kh)
         u = x * kh
         eu = np.exp(-u)
-        small = np.abs(u) < 0.05
-        any_small = bool(small.any())
-        g = _decay_quotient(u, eu, small, any_small)  # (1 - exp(-u)) / u
+        g = _decay_quotient(u, eu)
         big_g = (e * kh) * g
         eq = e * eu
         both = e * eq
         p2 = p1 + 2.0 * x * x
-        p4 = (((x + 4.0) * x + 8.0) * x + 12.0) * x + 8.0
+        p4 = p1 * x + 8.0 * x + 8.0
         numerator = p1 * (1.0 + both * both) + 2.0 * p2 * both + two * p4 * (big_g * big_g)
         denominator = 1.0 - both * both - two * (e + eq) * big_g
-        shallow = np.abs(two * kh) < _SERIES_BELOW
-        any_shallow = bool(shallow.any())
-        if any_shallow:
-            denominator = np.where(shallow, _shallow_denominator(two * kh, u, both)[0], denominator)
-        z = scale * numerator / (two * denominator)
-        if not slope:
-            return z, None
         eq_x = -kh * eq
         both_x = e * eq_x
-        g_x = (e * kh * kh) * _decay_quotient_slope(u, eu, g, small, any_small)
-        p1_x = (3.0 * x + 8.0) * x + 8.0
-        p4_x = ((4.0 * x + 12.0) * x + 16.0) * x + 12.0
+        g_x = (e * kh * kh) * _decay_quotient_slope(u, eu, g)
+        p4_x = p1_x * x + p1 + 8.0
         numerator_x = (
             p1_x * (1.0 + both * both) + 2.0 * p1 * both * both_x
             + 2.0 * ((p1_x + 4.0 * x) * both + p2 * both_x)
             + (p4 + two * p4_x) * (big_g * big_g) + 2.0 * two * p4 * big_g * g_x
         )
         denominator_x = -2.0 * both * both_x - (e + eq) * big_g - two * (eq_x * big_g + (e + eq) * g_x)
-        if any_shallow:
-            denominator_x = np.where(
-                shallow, _shallow_denominator(two * kh, u, both)[1] * kh, denominator_x
-            )
-        by_x = z * (numerator_x / numerator - denominator_x / denominator - 1.0 / two)
-        return z, by_x / (2.0 * r * nu * k * k)
+        shallow = np.abs(two * kh) < _SERIES_BELOW
+        if shallow.any():
+            value, along = _shallow_denominator(two * kh, u, both)
+            denominator = np.where(shallow, value, denominator)
+            denominator_x = np.where(shallow, along * kh, denominator_x)
+        z = scale * numerator / (two * denominator)
+        return z, z * (numerator_x / numerator - denominator_x / denominator - 1.0 / two) * by_s
 
 
-def _decay_quotient(u: Complex, eu: Complex, small: Any, any_small: bool) -> Complex:
-    if not any_small:
+def _decay_quotient(u: Complex, eu: Complex) -> Complex:
+    """Return (1 - exp(-u)) / u."""
+    small = np.abs(u) < 0.05
+    if not small.any():
         return (1.0 - eu) / u
-    safe = np.where(small, 1.0, u)
-    series = 1.0 - u / 2.0 * (1.0 - u / 3.0 * (1.0 - u / 4.0 * (1.0 - u / 5.0 * (1.0 - u / 6.0 * (1.0 - u / 7.0)))))
-    return np.where(small, series, (1.0 - eu) / safe)
+    result = np.ones_like(u)
+    np.divide(1.0 - eu, u, out=result, where=~small)
+    v = u[small]
+    result[small] = 1.0 - v / 2.0 * (1.0 - v / 3.0 * (1.0 - v / 4.0 * (1.0 - v / 5.0 * (1.0 - v / 6.0 * (1.0 - v / 7.0)))))
+    return result
 
 
-def _decay_quotient_slope(u: Complex, eu: Complex, g: Complex, small: Any, any_small: bool) -> Complex:
+def _decay_quotient_slope(u: Complex, eu: Complex, g: Complex) -> Complex:
     """Return d/du of (1 - exp(-u)) / u."""
-    if not any_small:
+    small = np.abs(u) < 0.05
+    if not small.any():
         return (eu - g) / u
-    safe = np.where(small, 1.0, u)
-    # sum over j >= 1 of (-1)^j j u^(j-1) / (j + 1)!
-    series = -0.5 + u * (1 / 3 - u * (1 / 8 - u * (1 / 30 - u * (1 / 144 - u * (1 / 840 - u / 5760)))))
-    return np.where(small, series, (eu - g) / safe)
+    result = np.ones_like(u)
+    np.divide(eu - g, u, out=result, where=~small)
+    v = u[small]
+    # sum over j >= 1 of (-1)^j j v^(j-1) / (j + 1)!
+    result[small] = -0.5 + v * (1 / 3 - v * (1 / 8 - v * (1 / 30 - v * (1 / 144 - v * (1 / 840 - v / 5760)))))
+    return result
 
 
 def _shallow_denominator(a: Complex, b: Complex, both: Complex) -> tuple[Complex, Complex]:

@@ -35,6 +35,9 @@ _NODES_PER_E_FOLD: Final = 40
 
 _CHUNK: Final = 6000
 
+_COARSE: Final = 24
+"""Wavenumbers that are looked at on each of the two passes for a mode that breaks up early."""
+
 
 class BoundedLayer(Protocol):
     """What the edges need to know of a layer: see `containment.physics.dispersion.Layer`."""
@@ -200,7 +203,7 @@ def hold_edges(
     if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
         lower[:], lower_wave[:] = np.inf, 0.0  # the acceleration needed grows without bound as k falls
 
-    z0 = 2.0 / layer.density * layer.static_impedance(k)
+    floor = _Floor.of(layer, k, depth)
     upper, upper_wave = nodes.breaks.copy(), nodes.breaks_k.copy()
     upper_sub = np.isfinite(upper)
 
@@ -211,13 +214,14 @@ def hold_edges(
         upper_wave[better] = at_k[where[better]]
         upper_sub[better] = subharmonic
 
-    sub = np.flatnonzero(_subharmonic_possible(nodes.first_sub, z0[ik], ww, top))
-    note(first_roots(layer, kk[sub], ww[sub], growth, top[sub], subharmonic=True), iw[sub], kk[sub], True)
-    stable = np.flatnonzero(~falls[ik])
-    static = np.abs(layer.coefficient(growth, k).real)
-    possible = np.minimum(static[ik[stable]] * z0[ik[stable]] * ww[stable], 2.0 * (z0[ik[stable]] * ww[stable]) ** 2)
-    stable = stable[possible <= 4.0 * np.minimum(top[stable], upper[iw[stable]]) ** 2]
     stop = np.minimum(top, upper[iw])
+    sub = _not_excluded(layer, floor, ik, kk, ww, stop, growth, subharmonic=True)
+    note(first_roots(layer, kk[sub], ww[sub], growth, stop[sub], subharmonic=True), iw[sub], kk[sub], True)
+    stop = np.minimum(top, upper[iw])
+    stable = np.flatnonzero(~falls[ik])
+    stable = stable[
+        _not_excluded(layer, floor, ik[stable], kk[stable], ww[stable], stop[stable], growth, subharmonic=False)
+    ]
     note(first_roots(layer, kk[stable], ww[stable], growth, stop[stable], subharmonic=False), iw[stable], kk[stable], False)
     # harmonic waves of the modes that fall at rest: the next root above the one that holds them
     ceiling_now = np.minimum(upper, cap)
@@ -250,7 +254,6 @@ class _Nodes:
     ceiling: Real
     breaks: Real
     breaks_k: Real
-    first_sub: Complex
 
 
 def _wavenumber_nodes(
@@ -261,9 +264,7 @@ def _wavenumber_nodes(
     breaks, breaks_k = np.full(len(w), np.inf), np.full(len(w), np.nan)
     for _ in range(40):
         k = _nodes_up_to(spectrum, reach, min(capillary, 1.0 / depth))
-        first = layer.coefficient(growth + 0.5j * w[:, None], k[None, :])
-        best = np.argmin(np.abs(first), axis=1)
-        size = np.abs(first)[np.arange(len(w)), best]
+        best, size = _likely_breaker(layer, k, w, growth)
         stop = np.minimum(cap, 4.0 * size)
         root = first_roots(layer, k[best], w, growth, stop, subharmonic=True)
         lower_root = root < breaks
@@ -272,7 +273,7 @@ def _wavenumber_nodes(
         needed = matters(layer, k[None, :], w[:, None], ceiling[:, None])
         if not needed[:, -1].any() and (not np.isfinite(depth) or k[-1] * depth >= 3.0):
             case_w, case_k = np.nonzero(needed)
-            return _Nodes(k, case_w, case_k, ceiling, breaks, breaks_k, first[needed])
+            return _Nodes(k, case_w, case_k, ceiling, breaks, breaks_k)
         reach *= 2.0
         if reach > 1e8:
             break
@@ -280,6 +281,20 @@ def _wavenumber_nodes(
         "no wavenumber was found above which waves provably do not matter: the surface tension or the viscosity is too "
         "small for this theory at these frequencies"
     )
+
+
+def _likely_breaker(
+    layer: BoundedLayer, k: Real, w: Real, growth: float
+) -> tuple[npt.NDArray[np.intp], Real]:
+    """Return for each frequency a wavenumber near the first subharmonic resonance and the size of its A_0."""
+    coarse = np.unique(np.round(np.geomspace(1, len(k), _COARSE)).astype(np.intp)) - 1
+    size = np.abs(layer.coefficient(growth + 0.5j * w[:, None], k[coarse]))
+    seen = np.argmin(size, axis=1)
+    low, high = coarse[np.maximum(seen - 1, 0)], coarse[np.minimum(seen + 1, len(coarse) - 1)]
+    fine = np.round(low[:, None] + (high - low)[:, None] * np.linspace(0.0, 1.0, _COARSE)).astype(np.intp)
+    size = np.abs(layer.coefficient(growth + 0.5j * w[:, None], k[fine]))
+    rows, seen = np.arange(len(w)), np.argmin(size, axis=1)
+    return fine[rows, seen], size[rows, seen]
 
 
 def _nodes_up_to(spectrum: Spectrum, reach: float, slowest: float) -> Real:
@@ -291,12 +306,73 @@ def _nodes_up_to(spectrum: Spectrum, reach: float, slowest: float) -> Real:
     return np.concatenate([spectrum.discrete, start * np.exp(np.arange(count) / _NODES_PER_E_FOLD)])
 
 
-def _subharmonic_possible(first: Complex, z0: Real, w: Real, ceiling: Real) -> Flags:
-    """Return where a subharmonic root below the ceiling is not excluded by the first coefficient alone."""
-    size = np.abs(first)
-    least = np.minimum(np.minimum(size, 1.5 * z0 * w) * size, 3.75 * (z0 * w) ** 2)
-    result: Flags = least <= 4.0 * ceiling * ceiling
-    return result
+@dataclass(frozen=True, slots=True)
+class _Floor:
+    r"""Proven lower bounds of abs(A(s)) over Re s >= 0, for each wavenumber.
+
+    abs(A) >= zeta abs(s) as in `Layer.smallest_coefficient`. The field of the layer carries at least the kinetic energy
+    of the potential flow of the same surface speed (Kelvin), so Im Z >= y M with M = rho / (k tanh kh), and
+    abs(A) >= (2/rho) abs(s) Im(Z + c/s) >= 2 y^2 / (k tanh kh) - (2/rho) c for stiffness c >= 0 and s = sigma + i y.
+    """
+
+    zeta: Real
+    mobility: Real
+    spring: Real
+
+    @classmethod
+    def of(cls, layer: BoundedLayer, k: Real, depth: float) -> "_Floor":
+        return cls(
+            2.0 / layer.density * layer.static_impedance(k),
+            2.0 / (k * np.tanh(k * depth)),
+            2.0 / layer.density * np.maximum(layer.stiffness(k), 0.0),
+        )
+
+    def at(self, chosen: npt.NDArray[np.intp], y: Real) -> Real:
+        result: Real = np.maximum(self.zeta[chosen] * y, self.mobility[chosen] * y * y - self.spring[chosen])
+        return result
+
+
+def _not_excluded(
+    layer: BoundedLayer,
+    floor: _Floor,
+    ik: npt.NDArray[np.intp],
+    k: Real,
+    w: Real,
+    ceiling: Real,
+    growth: float,
+    *,
+    subharmonic: bool,
+) -> npt.NDArray[np.intp]:
+    """Return the cases where a root below the ceiling is not excluded.
+
+    Let t = 2 a^2 / abs(A_2). While a^2 <= abs(A_n A_{n+1}) / 4 for n >= 2 (Worpitzky), the fraction C = 1 / (A_1 - T)
+    has abs(T) <= t, for this and every smaller a. Hence no root lies below a where
+
+        subharmonic  abs(A_0) - a^2 / (abs(A_1) - t) > a
+        harmonic     2 a^2 max(0, Re A_1 + t) / (abs(A_1) - t)^2 < A_0
+
+    A_2 is first replaced by its proven floor, and evaluated only where that leaves a doubt.
+    """
+    shift = 0.5 if subharmonic else 0.0
+    left = np.arange(len(k))
+    a, a2 = ceiling, ceiling * ceiling
+    for exact in (False, True):
+        here, kl, wl = ik[left], k[left], w[left]
+        first = layer.coefficient(growth + 1j * shift * wl, kl)
+        second = layer.coefficient(growth + 1j * (1.0 + shift) * wl, kl)
+        third = floor.at(here, (2.0 + shift) * wl)
+        if exact:
+            third = np.maximum(third, np.abs(layer.coefficient(growth + 1j * (2.0 + shift) * wl, kl)))
+        fourth, fifth = floor.at(here, (3.0 + shift) * wl), floor.at(here, (4.0 + shift) * wl)
+        t = 2.0 * a2[left] / third
+        gap = np.abs(second) - t
+        if subharmonic:
+            clear = (gap > 0.0) & (np.abs(first) - a2[left] / gap > a[left])
+        else:
+            clear = (gap > 0.0) & (2.0 * a2[left] * np.maximum(0.0, second.real + t) < first.real * gap * gap)
+        clear &= (third * fourth >= 4.0 * a2[left]) & (fourth * fifth >= 4.0 * a2[left])
+        left = left[~clear]
+    return left
 
 
 def _extreme(

@@ -29,7 +29,7 @@ from typing import Final, NamedTuple
 import numpy as np
 import numpy.typing as npt
 
-__all__ = ["SurfaceMatrix", "reduced_root", "surface_matrix"]
+__all__ = ["SurfaceMatrix", "layer_matrix", "reduced_root", "surface_matrix"]
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
@@ -107,6 +107,26 @@ def surface_matrix(x: npt.ArrayLike, kh: npt.ArrayLike) -> tuple[SurfaceMatrix, 
             entries[:, chosen] = rule(x[chosen], kh[chosen])
     m = [row.reshape(shape) for row in entries]
     return SurfaceMatrix(m[0], m[1], m[2]), SurfaceMatrix(m[3], m[4], m[5])
+
+
+def layer_matrix(
+    s: Complex, wavenumber: Real, *, density: float, viscosity: float, depth: float
+) -> tuple[SurfaceMatrix, SurfaceMatrix]:
+    """Return M, Pa s/m, and dM/ds of a Newtonian layer on a rigid base; s (1/s) and k (1/m) broadcast.
+
+    Examples
+    --------
+    >>> m, _ = layer_matrix(np.zeros(1, complex), np.array([100.0]), density=1e3, viscosity=1.0, depth=np.inf)
+    >>> [float(entry[0].real) for entry in m]  # 2 mu k, 0, 2 mu k
+    [200.0, -0.0, 200.0]
+    """
+    k = wavenumber
+    rate = viscosity / density * k * k
+    x = reduced_root(s / rate)
+    m, m_x = surface_matrix(x, k * depth)
+    scale = viscosity * k
+    by_s = scale / (2.0 * (1.0 + x) * rate)
+    return SurfaceMatrix(*(scale * entry for entry in m)), SurfaceMatrix(*(by_s * entry for entry in m_x))
 
 
 def _deep(x: Complex, kh: Real) -> Complex:
