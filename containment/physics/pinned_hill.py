@@ -34,7 +34,7 @@ import numpy.typing as npt
 
 from containment.physics.hill import LayerModel
 
-__all__ = ["PinnedHalf"]
+__all__ = ["PinnedHalf", "harmonics_at_work", "reach_factors"]
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
@@ -55,8 +55,8 @@ class PinnedHalf:
         b_j, 1/m.
     scale : array, shape (cases, rows + 1, rims)
         Scale of each multiplier, which gives the rows of the matrix a comparable size.
-    reach : array, shape (cases,)
-        sqrt(k)/w of the shortest wave that matters: 2 sqrt(a) times it, plus 8, is the number of rows in use.
+    reach : array, shape (2, cases)
+        Factors c1 and c2: the harmonics up to n* = min(c1 a^(3/4), c2 a^(2/3)) are at work, see `reach`.
     subharmonic : bool
         Which of the two systems it is.
     """
@@ -80,7 +80,7 @@ class PinnedHalf:
         *,
         subharmonic: bool,
     ) -> Self:
-        """Evaluate the coefficients: wavenumbers (cases, modes), heights (cases, rims, modes), w and reach (cases,)."""
+        """Evaluate the coefficients: wavenumbers (cases, modes), heights (cases, rims, modes), w (cases,)."""
         steps = np.arange(rows + 1)[:, None, None] + (0.5 if subharmonic else 0.0)
         coefficients = layer.coefficient(growth + 1j * steps * w[:, None], wavenumbers)
         scale = 1.0 / np.sqrt(np.einsum("crk,nck->cnr", heights**2, 1.0 / np.abs(coefficients)))
@@ -96,7 +96,7 @@ class PinnedHalf:
             self.coefficients[:, chosen],
             self.heights[chosen],
             self.scale[chosen],
-            self.reach[chosen],
+            self.reach[:, chosen],
             self.subharmonic,
         )
 
@@ -114,7 +114,7 @@ class PinnedHalf:
 
     def _determinant(self, acceleration: Real) -> tuple[Real, Whole]:
         a = acceleration[:, None]
-        top = float(np.max(np.sqrt(acceleration) * self.reach, initial=0.0))
+        top = float(np.max(harmonics_at_work(acceleration, self.reach), initial=0.0))
         rows = min(len(self.coefficients) - 1, int(2.0 * top) + 8)
         A = self.coefficients[: rows + 1]  # noqa: N806
         ratio = np.empty_like(A)  # a / (A_n - a^2 / (A_{n+1} - ...)): zeta_n / zeta_{n-1} outside the rim's reach
@@ -132,7 +132,7 @@ class PinnedHalf:
     def _outer_block(self, a: Real, A: Complex, ratio: Complex) -> Complex:  # noqa: N803
         """Return P, shape (cases, N, rims, N, rims): sum over modes of b b^T times the inverse of the rows n >= 1."""
         rows = len(A) - 1
-        cases, rims, _ = self.heights.shape
+        cases, rims, modes = self.heights.shape
         forward = A[1]
         cells = np.empty_like(A[1:])
         for n in range(1, rows + 1):
@@ -140,7 +140,7 @@ class PinnedHalf:
                 forward = A[n] - a * a / forward
             # A_n - a^2/eps_{n+1} is a / ratio_n
             cells[n - 1] = 1.0 / (a / ratio[n] + forward - A[n])
-        pairs = np.einsum("crk,csk->ckrs", self.heights, self.heights).reshape(cases, -1, rims * rims)
+        pairs = np.einsum("crk,csk->ckrs", self.heights, self.heights).reshape(cases, modes, rims * rims)
         result = np.zeros((cases, rows, rims, rows, rims), np.complex128)
         index = np.arange(rows)
         for offset in range(rows):
@@ -158,12 +158,12 @@ class PinnedHalf:
         rows = len(descent) - 1
         # v_j = (1, 2 Re h, -2 Im h): the combination of (lambda_0, Re lambda_n, Im lambda_n) that drives zeta_0j
         v = np.concatenate([descent.real[:1], 2.0 * descent.real[1:], -2.0 * descent.imag[1:]])
-        drive = np.einsum("vck,crk->cvrk", v, self.heights).reshape(cases, -1, modes)
+        drive = np.einsum("vck,crk->cvrk", v, self.heights).reshape(cases, rims * (1 + 2 * rows), modes)
         matrix = (drive / g[:, None, :]) @ drive.transpose(0, 2, 1)
         size = rims * rows
         p = 2.0 * block.reshape(cases, size, size)
         _add_form(matrix, p, rims, rims + size)
-        scale = self.scale[:, : rows + 1].reshape(cases, -1)
+        scale = self.scale[:, : rows + 1].reshape(cases, rims * (1 + rows))
         scale = np.concatenate([scale, scale[:, rims:]], axis=1)
         logs = np.sum(np.log(np.abs(g / g0)), axis=1)
         return _inertia(matrix, scale, logs, np.sum(g < 0.0, axis=1) - size - rims)
@@ -174,8 +174,8 @@ class PinnedHalf:
         d = a * a - (g.real**2 + g.imag**2)
         # zeta_0 = x + i y; b h . lambda drives x by its real part and y by minus its imaginary part
         real, imag = descent.real, descent.imag
-        on_x = np.einsum("vck,crk->cvrk", np.concatenate([real, -imag]), self.heights).reshape(cases, -1, modes)
-        on_y = np.einsum("vck,crk->cvrk", np.concatenate([-imag, -real]), self.heights).reshape(cases, -1, modes)
+        on_x = np.einsum("vck,crk->cvrk", np.concatenate([real, -imag]), self.heights).reshape(cases, 2 * rims * (1 + rows), modes)
+        on_y = np.einsum("vck,crk->cvrk", np.concatenate([-imag, -real]), self.heights).reshape(cases, 2 * rims * (1 + rows), modes)
         by_d = 1.0 / d[:, None, :]
         gr, gi, aa = g.real[:, None, :], g.imag[:, None, :], a[:, :, None]
         left_x = by_d * ((-gr - aa) * on_x + gi * on_y)
@@ -183,10 +183,26 @@ class PinnedHalf:
         matrix = left_x @ on_x.transpose(0, 2, 1) + left_y @ on_y.transpose(0, 2, 1)
         size = rims * rows
         _add_form(matrix, block.reshape(cases, size, size), rims, 2 * rims + size)
-        scale = self.scale[:, : rows + 1].reshape(cases, -1)
+        scale = self.scale[:, : rows + 1].reshape(cases, rims * (1 + rows))
         first = self.coefficients[0]
         logs = np.sum(np.log(np.abs(d) / (first.real**2 + first.imag**2)), axis=1)
         return _inertia(matrix, np.concatenate([scale, scale], axis=1), logs, np.sum(d > 0.0, axis=1) - size - rims)
+
+
+def harmonics_at_work(acceleration: Real, reach: Real) -> Real:
+    """Return n* for accelerations (m/s^2) and the factors of `reach_factors`."""
+    result: Real = np.minimum(reach[0] * acceleration**0.75, reach[1] * acceleration ** (2.0 / 3.0))
+    return result
+
+
+def reach_factors(density: float, viscosity: float, surface_tension: float, w: Real) -> Real:
+    """Return c1 and c2, shape (2, cases), from the liquid and the angular frequencies.
+
+    A wave has harmonics up to sqrt(a k)/w at work, if its coefficients do not exceed 2 a anyway: by tension for
+    k > sqrt(a rho/gamma), by viscosity (abs(A_n) > 4 nu k n w) for k^(3/2) > sqrt(a)/(2 nu). The shorter limit counts.
+    """
+    viscous = (2.0 * viscosity / density) ** (-1.0 / 3.0) if viscosity > 0.0 else np.inf
+    return np.stack([(density / surface_tension) ** 0.25 / w, viscous / w])
 
 
 def _add_form(matrix: Real, p: Complex, real_from: int, imag_from: int) -> None:
