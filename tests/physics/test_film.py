@@ -83,7 +83,7 @@ def test_at_rest_slow_motion_is_resisted_fourfold_in_a_thin_film():
 
 
 def test_high_frequency_damping_by_a_film():
-    """Deep water of low viscosity: a skin adds mu q, so sqrt(rho mu w / 2), to the resistance (Lamb 351, from memory)."""
+    """Deep water of low viscosity: a skin adds mu q, so sqrt(rho mu w / 2), to the resistance (Lamb, from memory)."""
     layer = FilmedLayer(density=1e3, viscosity=1e-3, surface_tension=0.0, depth=np.inf, film_modulus=COVERED)
     k, w = np.array(400.0), 2e3
     z = layer.coefficient(1j * w, k) - 2 / 1e3 * layer.stiffness(k)
@@ -188,7 +188,8 @@ def test_lower_side_by_the_independent_route(liquid, frequency, modulus, lower):
 
 
 @pytest.mark.parametrize(
-    ("liquid", "frequency", "modulus"), [(THICK, 50.0, COVERED), (THIN, 60.0, COVERED), (THIN, 60.0, 0.0), (THIN, 60.0, 0.3)]
+    ("liquid", "frequency", "modulus"),
+    [(THICK, 50.0, COVERED), (THIN, 60.0, COVERED), (THIN, 60.0, 0.0), (THIN, 60.0, 0.3)],
 )
 def test_upper_side_by_the_independent_route(liquid, frequency, modulus):
     result = edges(FilmedLayer(**liquid, film_modulus=modulus), frequency)

@@ -3,7 +3,7 @@
 Perinet, Juric & Tuckerman, J. Fluid Mech. 635 (2009) 1-26: properties and critical wavelength 13.2 mm as in the movie
 caption; the threshold 25.8 m/s^2 is from memory (and was computed by two other codes: 25.825 m/s^2, 13.205 mm).
 Chandrasekhar 1961, viscous Rayleigh-Taylor, equal kinematic viscosities, no tension, deep: Atwood 1 from memory
-(0.4907, 0.4599 in units of (g/nu^2)^(1/3) and (g^2/nu)^(1/3)); Atwood 0.5 and 0.1 were computed by an independent route.
+(0.4907, 0.4599 in units of (g/nu^2)^(1/3) and (g^2/nu)^(1/3)); Atwood 0.5 and 0.1: computed by an independent route.
 """
 
 import numpy as np
