@@ -8,12 +8,31 @@ _PUBLIC: Final = {
     "InputError": "containment.errors",
     "NotComputableError": "containment.errors",
     "ContainmentError": "containment.errors",
+    "Liquid": "containment.given.liquid",
+    "liquid": "containment.given.liquid",
+    "Cylinder": "containment.given.vessel",
+    "Box": "containment.given.vessel",
+    "Annulus": "containment.given.vessel",
+    "Slot": "containment.given.vessel",
+    "Unbounded": "containment.given.vessel",
+    "Motion": "containment.given.motion",
+    "DriveLimits": "containment.given.drive",
+    "Verdict": "containment.judgement.verdict",
+    "assess": "containment.judgement.verdict",
+    "holding_window": "containment.judgement.verdict",
+    "HoldingWindow": "containment.judgement.window",
 }
 
 __all__ = sorted(_PUBLIC)
 
 if TYPE_CHECKING:
     from containment.errors import ContainmentError, InputError, NotComputableError
+    from containment.given.drive import DriveLimits
+    from containment.given.liquid import Liquid, liquid
+    from containment.given.motion import Motion
+    from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded
+    from containment.judgement.verdict import Verdict, assess, holding_window
+    from containment.judgement.window import HoldingWindow
 
 
 def __getattr__(name: str) -> Any:

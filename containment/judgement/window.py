@@ -82,6 +82,8 @@ class HoldingWindow:
     frequencies, lower, upper, ceiling : array
         Hz and m/s^2, one value a frequency; see `Edges`. The ceiling is the least of the upper edge, the drive and the
         other limits.
+    drive_ceiling : array
+        What the drive and the other limits allow, m/s^2; may be infinite.
     lower_wavenumber, upper_wavenumber : array
         Of the binding modes, 1/m.
     minimum_acceleration, minimum_frequency, recommended : HoldingPoint or None
@@ -95,6 +97,7 @@ class HoldingWindow:
     lower: Real
     upper: Real
     ceiling: Real
+    drive_ceiling: Real
     lower_wavenumber: Real
     upper_wavenumber: Real
     minimum_acceleration: HoldingPoint | None
@@ -188,6 +191,7 @@ def search_window(
     corners = _corners(everything, sample) if everything.held.any() else (None, None, None)
     return HoldingWindow(
         frequencies=nodes, lower=coarse.edges.lower, upper=coarse.edges.upper, ceiling=coarse.ceiling,
+        drive_ceiling=np.asarray(drive_ceiling(nodes), dtype=np.float64),
         lower_wavenumber=coarse.edges.lower_wavenumber, upper_wavenumber=coarse.edges.upper_wavenumber,
         minimum_acceleration=corners[0], minimum_frequency=corners[1], recommended=corners[2],
     )  # fmt: skip

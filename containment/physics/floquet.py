@@ -219,20 +219,22 @@ def exponents(layer: SlopedLayer, k: Real, w: float, acceleration: float) -> Exp
     by `containment.physics.completeness`.
     """
     free = _free_motion(layer, k)
-    free = free.real + 1j * _folded(free.imag, w)
+    # not exactly at a zero of a coefficient, where its row cannot be divided by it
+    free = 1.001 * free.real + 1j * (_folded(free.imag, w) + 1e-4 * w)
     starts = np.stack([np.zeros_like(free), np.full_like(free, 0.25j * w), np.full_like(free, 0.5j * w), free])
     rows = rows_needed(acceleration / (w * w), float(k.max(initial=0.0)))
     s = starts.ravel()
     kk = np.tile(k, len(starts))
     settled = np.zeros(len(s), dtype=bool)
     active = np.arange(len(s))
+    longest = 0.3 * w
     for _ in range(_NEWTON_STEPS):
         if not len(active):
             break
-        step = 1.0 / determinant(layer, s[active], kk[active], w, acceleration, rows)[1]
-        longest = 0.3 * w
-        size = np.abs(step)
-        step = np.where(size > longest, step * (longest / size), step)
+        with np.errstate(all="ignore"):  # a start that runs away turns into not-a-number and is dropped
+            step = 1.0 / determinant(layer, s[active], kk[active], w, acceleration, rows)[1]
+            size = np.abs(step)
+            step = np.where(size > longest, step * (longest / size), step)
         s[active] -= step
         done = (size <= 1e-12 * (np.abs(s[active]) + 1e-3 * w))
         settled[active[done]] = True
@@ -256,7 +258,8 @@ def _free_motion(layer: SlopedLayer, k: Real) -> Complex:
     inertia = np.abs(layer.coefficient(far * 1j, k)) / far**2
     s = np.sqrt(-layer.coefficient(0.0, k) / inertia + 0j)
     for _ in range(12):
-        value, slope = layer.coefficient_and_slope(s, k)
-        s = s - value / slope
+        with np.errstate(all="ignore"):
+            value, slope = layer.coefficient_and_slope(s, k)
+            s = s - value / slope
         s = np.where(np.isfinite(s), s, 0.0)
     return s

@@ -1,0 +1,178 @@
+"""A drive point judged: edges at its frequency, growth rates of all modes, and the proof that none was missed."""
+
+import math
+from dataclasses import dataclass
+from typing import Final
+
+import numpy as np
+import numpy.typing as npt
+
+from containment.judgement.case import Case
+from containment.physics.completeness import count_growing
+from containment.physics.edges import Edges, matters
+from containment.physics.floquet import exponents, growing_exponents
+from containment.physics.hill import Half, rows_needed
+
+__all__ = ["OperatingPoint", "judged_point"]
+
+Real = npt.NDArray[np.float64]
+
+_NODES_PER_E_FOLD: Final = 40
+_MOST_MODES_IN_FULL: Final = 160
+_FINEST: Final = 1e-6
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class OperatingPoint:
+    """What happens at a drive point.
+
+    Attributes
+    ----------
+    frequency, acceleration : float
+        Hz and peak m/s^2.
+    edges, strict : Edges
+        At this frequency, for the growth allowance and for no growth at all.
+    growth_rate : float
+        Largest real part of an exponent over all modes, 1/s: proven where it is above the allowance, the slowest decay
+        found where it is below.
+    worst_wavenumber : float
+        Of that mode, 1/m.
+    worst_subharmonic : bool
+        Whether it answers at half the drive frequency.
+    growing_modes : int
+        Modes with an exponent beyond the allowance; bands of wavenumber count once where every wavenumber counts.
+    proven : bool
+        Whether the winding number of every mode that can matter is an integer.
+    modes_checked : int
+        Wavenumbers whose winding number was computed; all others are excluded by a bound.
+    farthest_from_integer : float
+        Largest distance of a winding number from an integer.
+    """
+
+    frequency: float
+    acceleration: float
+    edges: Edges
+    strict: Edges
+    growth_rate: float
+    worst_wavenumber: float
+    worst_subharmonic: bool
+    growing_modes: int
+    proven: bool
+    modes_checked: int
+    farthest_from_integer: float
+
+    @property
+    def lower(self) -> float:
+        """Lower edge for the allowance, m/s^2."""
+        return float(self.edges.lower[0])
+
+    @property
+    def upper(self) -> float:
+        """Upper edge for the allowance, m/s^2; may be infinite."""
+        return float(self.edges.upper[0])
+
+    @property
+    def inside(self) -> bool:
+        """Whether the point lies between the edges and no mode grows beyond the allowance."""
+        return self.lower < self.acceleration < self.upper and self.growing_modes == 0
+
+    @property
+    def strictly_inside(self) -> bool:
+        """Whether the point lies between the edges for no growth at all."""
+        return bool(self.strict.lower[0] < self.acceleration < self.strict.upper[0]) and self.growth_rate <= 0.0
+
+
+def judged_point(case: Case, *, frequency: float, acceleration: float) -> OperatingPoint:
+    """Judge a drive point, Hz and peak m/s^2."""
+    f = np.array([frequency])
+    w = 2.0 * math.pi * frequency
+    growth = case.allowance.growth
+    edges = case.edges(f)
+    strict = edges if growth == 0.0 else case.edges(f, growth=0.0)
+    k, band = _wavenumbers(case, w, acceleration)
+    if not len(k):
+        return OperatingPoint(
+            frequency=frequency, acceleration=acceleration, edges=edges, strict=strict, growth_rate=0.0,
+            worst_wavenumber=math.nan, worst_subharmonic=False, growing_modes=0, proven=True, modes_checked=0,
+            farthest_from_integer=0.0,
+        )  # fmt: skip
+    count = count_growing(case.layer, k, w, acceleration, growth=growth)
+    growing = count.growing > 0
+    bands = growing & (band >= 0)
+    starts = int(np.count_nonzero(bands[1:] & ~bands[:-1])) + int(bands[0])
+    if growing.any():
+        found = growing_exponents(case.layer, k[growing], w, acceleration, above=growth)
+        where = k[growing]
+        if not np.isfinite(found.exponent).any():  # grows at neither the drive frequency nor half of it
+            found = exponents(case.layer, where, w, acceleration)
+    else:
+        where = _slowest(k, edges)
+        found = exponents(case.layer, where, w, acceleration)
+    real = np.where(np.isfinite(found.exponent.real), found.exponent.real, -np.inf)
+    worst = int(np.argmax(real))
+    return OperatingPoint(
+        frequency=frequency, acceleration=acceleration, edges=edges, strict=strict,
+        growth_rate=float(real[worst]), worst_wavenumber=float(where[worst]),
+        worst_subharmonic=bool(found.subharmonic[worst]),
+        growing_modes=int(np.count_nonzero(growing & (band < 0))) + starts,
+        proven=bool(count.proven.all()), modes_checked=len(k),
+        farthest_from_integer=float(count.distance.max()),
+    )  # fmt: skip
+
+
+def _slowest(k: Real, edges: Edges) -> Real:
+    """Thin out the modes for the search of the slowest decay: all, or a regular choice with the binding ones."""
+    if len(k) <= _MOST_MODES_IN_FULL:
+        return k
+    chosen = k[np.unique(np.round(np.geomspace(1, len(k), _MOST_MODES_IN_FULL)).astype(int)) - 1]
+    binding = [x for x in (edges.lower_wavenumber[0], edges.upper_wavenumber[0]) if np.isfinite(x) and x > 0.0]
+    return np.unique(np.concatenate([chosen, binding]))
+
+
+def _wavenumbers(case: Case, w: float, acceleration: float) -> tuple[Real, npt.NDArray[np.int64]]:
+    """Return the wavenumbers that can matter; the second array is -1 for modes taken one by one, else >= 0.
+
+    Where every wavenumber counts, nodes are set and halved until the Hill determinants change by less than a factor of
+    two from node to node, so that no band of growth hides between two of them.
+    """
+    spectrum, layer = case.spectrum, case.layer
+    discrete = spectrum.discrete
+    if len(discrete):
+        discrete = discrete[matters(layer, discrete, np.array(w), np.array(acceleration))]
+    start = spectrum.continuous_from or 1e-3 * min(case.capillary_wavenumber, 1.0 / case.vessel.depth)
+    reach = 4.0 * max(case.capillary_wavenumber, 3.0 / case.vessel.depth, start)
+    while matters(layer, np.array([reach]), np.array(w), np.array(acceleration))[0] and reach < 1e8:
+        reach *= 1.5
+    nodes = start * np.exp(np.arange(int(_NODES_PER_E_FOLD * math.log(reach / start)) + 2) / _NODES_PER_E_FOLD)
+    needed = matters(layer, nodes, np.array(w), np.array(acceleration))
+    if not needed.any():
+        return discrete, np.full(len(discrete), -1)
+    last = int(np.flatnonzero(needed)[-1])
+    nodes = _resolved(case, nodes[: last + 2], w, acceleration)
+    return np.concatenate([discrete, nodes]), np.concatenate([np.full(len(discrete), -1), np.zeros(len(nodes), int)])
+
+
+def _resolved(case: Case, nodes: Real, w: float, acceleration: float) -> Real:
+    rows = rows_needed(acceleration / (w * w), float(nodes[-1]))
+
+    def margins(k: Real) -> Real:
+        each = np.full(len(k), w)
+        push = np.full(len(k), acceleration)
+        return np.stack([
+            Half.of(case.layer, k, each, case.allowance.growth, rows, subharmonic=sub).margin(push) for sub in (False, True)
+        ])
+
+    values = margins(nodes)
+    for _ in range(16):
+        left, right = np.abs(values[:, :-1]), np.abs(values[:, 1:])
+        same = np.sign(values[:, :-1]) == np.sign(values[:, 1:])
+        steep = np.any(same & (np.maximum(left, right) > 2.0 * np.minimum(left, right)), axis=0)
+        steep &= nodes[1:] / nodes[:-1] > 1.0 + _FINEST
+        if not steep.any() or len(nodes) > 4000:
+            break
+        middle = np.sqrt(nodes[:-1][steep] * nodes[1:][steep])
+        values = np.concatenate([values, margins(middle)], axis=1)
+        nodes = np.concatenate([nodes, middle])
+        order = np.argsort(nodes)
+        nodes, values = nodes[order], values[:, order]
+    return nodes
