@@ -51,8 +51,20 @@ def main(arguments: Sequence[str] | None = None) -> int:
         )
         if name == chosen:  # only the chosen sub-command's module is imported
             importlib.import_module(module).add_arguments(sub)
-    options = parser.parse_args(arguments)
+    options = parser.parse_args(_with_negative_values_joined(arguments))
     return _run(SUBCOMMANDS[options.command][0], options)
+
+
+def _with_negative_values_joined(arguments: list[str]) -> list[str]:
+    """Join ``--depth -3mm`` to ``--depth=-3mm``, so that a negative value is judged as a value, not as an option."""
+    joined: list[str] = []
+    for argument in arguments:
+        negative = len(argument) > 1 and argument[0] == "-" and (argument[1].isdigit() or argument[1] == ".")
+        if negative and joined and joined[-1].startswith("--") and "=" not in joined[-1]:
+            joined[-1] += "=" + argument
+        else:
+            joined.append(argument)
+    return joined
 
 
 def _run(module: str, options: argparse.Namespace) -> int:

@@ -1,0 +1,92 @@
+"""``containment liquid``: verdict for a liquid layer in an upside-down vessel."""
+
+import argparse
+
+from containment.faces import options as shared
+from containment.given.liquid import Liquid
+
+__all__ = ["add_arguments", "add_liquid", "liquid_from", "run"]
+
+
+def add_liquid(parser: argparse.ArgumentParser) -> None:
+    """Add the options of the liquid."""
+    parser.add_argument("name", metavar="NAME", help="liquid of the property table, or custom")
+    group = parser.add_argument_group("liquid")
+    group.add_argument("--temperature", metavar="T", default="20 degC", help="default 20degC")
+    group.add_argument("--density", metavar="RHO", help="in place of the table's, such as 1261kg/m**3")
+    group.add_argument("--viscosity", metavar="MU", help="dynamic, in place of the table's, such as 1.41Pa*s")
+    group.add_argument("--surface-tension", metavar="GAMMA", help="in place of the table's, such as 63mN/m")
+    group.add_argument("--table", metavar="FILE", action="append", help="a table of your own; may be repeated")
+
+
+def add_process(parser: argparse.ArgumentParser) -> None:
+    """Add what the process asks for."""
+    group = parser.add_argument_group("process")
+    group.add_argument("--dwell", metavar="TIME", help="how long it stays upside-down; default for ever")
+    group.add_argument("--unevenness", metavar="X", help="of the surface at the start; default 0.1mm or depth/100")
+    group.add_argument("--amplification", metavar="B", help="factor by which it may grow in the dwell")
+    group.add_argument("--margin", metavar="FACTOR", help="factor to either edge below which it is marginal; 1.25")
+    group.add_argument("--ambient-pressure", metavar="P", help="absolute; default 101.325kPa")
+
+
+def add_arguments(parser: argparse.ArgumentParser) -> None:
+    """Add the sub-command's options."""
+    add_liquid(parser)
+    shared.add_vessel(parser, depth="layer")
+    shared.add_drive_point(parser)
+    shared.add_drive_limits(parser)
+    add_process(parser)
+    shared.add_output(parser)
+
+
+def liquid_from(options: argparse.Namespace) -> Liquid:
+    """Return the liquid that the options describe."""
+    from containment.given.liquid import liquid
+
+    values = {
+        name: shared.quantity(options, name, kind)
+        for name, kind in (
+            ("density", "density"),
+            ("viscosity", "viscosity"),
+            ("surface_tension", "surface tension"),
+        )
+    }
+    return liquid(
+        options.name,
+        temperature=shared.quantity(options, "temperature", "temperature", above=0.0, most=5000.0),
+        tables=options.table or (),
+        **values,
+    )
+
+
+def run(options: argparse.Namespace) -> int:
+    """Judge the case and print the verdict; return the exit status."""
+    from containment.constants import STANDARD_ATMOSPHERE
+    from containment.judgement.findings import exit_status
+    from containment.judgement.verdict import MARGIN_FACTOR, assess
+
+    vessel = shared.vessel_from(options)
+    motion = shared.motion_from(options)
+    drive = shared.drive_from(options)
+    factor = shared.quantity(options, "margin", "ratio", least=1.0, most=100.0)
+    pressure = shared.quantity(options, "ambient_pressure", "pressure", above=0.0, most=1e8)
+    verdict = assess(
+        liquid_from(options),
+        vessel,
+        motion,
+        dwell=shared.quantity(options, "dwell", "time", least=1e-3, most=1e10),
+        unevenness=shared.quantity(options, "unevenness", "length", above=0.0),
+        amplification=shared.quantity(options, "amplification", "ratio", above=1.0, most=1e6),
+        drive=drive,
+        ambient_pressure=STANDARD_ATMOSPHERE if pressure is None else pressure,
+        margin_factor=MARGIN_FACTOR if factor is None else factor,
+    )
+    if options.json:
+        import json
+
+        print(json.dumps(verdict.to_dict(), allow_nan=False, ensure_ascii=False, indent=2))
+    else:
+        from containment.faces.screen_liquid import liquid_screen
+
+        liquid_screen(verdict, plain=options.plain, detail=options.detail).show()
+    return exit_status(verdict.answer, verdict.proven)
