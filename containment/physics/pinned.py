@@ -9,61 +9,40 @@ them. It breaks up at the first root that follows, harmonic or subharmonic.
 
 References
 ----------
-Benjamin, T. B. & Scott, J. C. (1979), J. Fluid Mech. 92, 241-267 (pinned edge; from memory). Kumar, K. & Tuckerman, L. S.
-(1994), J. Fluid Mech. 279, 49-68 (rows of the shaken layer).
+Kumar, K. & Tuckerman, L. S. (1994), J. Fluid Mech. 279, 49-68 (rows of the shaken layer).
 """
 
 import math
-from collections.abc import Callable, Sequence
+from collections.abc import Sequence
 from dataclasses import dataclass
-from typing import Final, Protocol
+from typing import Final
 
 import numpy as np
 import numpy.typing as npt
 
-from containment.errors import InputError, NotComputableError
 from containment.physics.crossings import first_crossing, refined
 from containment.physics.hill import Half, rows_needed
 from containment.physics.pinned_hill import PinnedHalf, harmonics_at_work, reach_factors
-from containment.physics.rim_modes import FEWEST_DISCRETE, RimModes, annulus_rim, cylinder_rim
+from containment.physics.pinned_static import (
+    PinnedLayer,
+    Sums,
+    check_pinned,
+    rim_modes,
+    sharp_resonance,
+    smallest_stiffness,
+    static_pinned_count,
+    sums_for,
+)
+from containment.physics.rim_modes import RimModes
 
-__all__ = ["PinnedEdges", "PinnedLayer", "pinned_edges", "pinned_lower_roots", "rim_modes", "static_pinned_growth"]
+__all__ = ["PinnedEdges", "pinned_edges", "pinned_lower_roots"]
 
 Real = npt.NDArray[np.float64]
-Complex = npt.NDArray[np.complex128]
 Whole = npt.NDArray[np.int64]
 
-_MOST_DISCRETE: Final = 240
 _ORDERS_AT_ONCE: Final = 6
 _LOWER_STEP: Final = 0.3
 """Step in log a of the march to the last lower root: the count of shapes that still fall can't be stepped over."""
-
-
-class PinnedLayer(Protocol):
-    """What a pinned surface needs to know of a layer; `containment.physics.dispersion.Layer` is one."""
-
-    @property
-    def density(self) -> float:
-        """Return rho, kg/m^3."""
-        ...
-
-    @property
-    def viscosity(self) -> float:
-        """Return mu, Pa s."""
-        ...
-
-    @property
-    def surface_tension(self) -> float:
-        """Return gamma, N/m."""
-        ...
-
-    def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
-        """Return A(s; k), m/s^2."""
-        ...
-
-    def static_impedance(self, wavenumber: npt.ArrayLike) -> Real:
-        """Return Z(0; k), Pa s/m."""
-        ...
 
 
 @dataclass(frozen=True, slots=True)
@@ -91,95 +70,6 @@ class PinnedEdges:
     upper_error: Real
     lower_order: Whole
     upper_order: Whole
-
-
-@dataclass(frozen=True, slots=True)
-class _Sums:
-    """How finely the sums over the modes are taken."""
-
-    discrete: int
-    nodes: int
-    reach: float
-
-
-def rim_modes(kind: str, dims: Sequence[float], order: int, *, discrete: int, nodes: int, reach: float) -> RimModes:
-    """Return the modes of one circumferential order.
-
-    Parameters
-    ----------
-    kind : str
-        "cylinder" with dims (radius,), or "annulus" with dims (inner radius, outer radius), m.
-    dims : sequence of float
-    order, discrete, nodes, reach
-        See `containment.physics.rim_modes.cylinder_rim`.
-
-    Raises
-    ------
-    InputError
-        The vessel is of another kind: the sides of a box meet in corners, whose multipliers couple.
-    """
-    if kind == "cylinder" and len(dims) == 1:
-        return cylinder_rim(radius=dims[0], order=order, discrete=discrete, nodes=nodes, reach=reach)
-    if kind == "annulus" and len(dims) == 2:
-        return annulus_rim(inner=dims[0], outer=dims[1], order=order, discrete=discrete, nodes=nodes, reach=reach)
-    raise InputError(
-        f"pinned contact line in a vessel of kind {kind!r} with {len(dims)} dimensions: only a cylinder (radius) and an "
-        "annulus (inner, outer radius) can be computed"
-    )
-
-
-def static_pinned_growth(
-    layer: PinnedLayer, kind: str, dims: Sequence[float], order: int, *, precision: float = 1e-10
-) -> Real:
-    """Return the growth rates of the pinned shapes of one order that fall when the layer is not shaken.
-
-    Parameters
-    ----------
-    layer : PinnedLayer
-        The layer.
-    kind, dims
-        Vessel, see `rim_modes`.
-    order : int
-        Circumferential order m.
-    precision : float
-        Relative precision of the growth rates.
-
-    Returns
-    -------
-    array, shape (shapes,)
-        s, 1/s, in falling order; empty when the layer at rest holds.
-
-    Notes
-    -----
-    With M(s) = sum over j of b_j b_j^T / A(s; k_j), the number of shapes that grow faster than s is the number of
-    negative A(s; k_j) plus the number of positive eigenvalues of M less the number of rims; s is bisected on it.
-
-    Examples
-    --------
-    Water, 20 mm across, does not fall when the rim pins it, as R < 3.8317 l_c; when it slides it falls, as R > 1.8412 l_c.
-
-    >>> from containment.physics.dispersion import Layer
-    >>> water = Layer(density=998.0, viscosity=1e-3, surface_tension=0.0728, depth=0.05)
-    >>> [len(static_pinned_growth(water, "cylinder", (radius,), 1)) for radius in (0.0104, 0.0105)]
-    [0, 1]
-    """
-    _check(layer)
-    rim = rim_modes(kind, dims, order, discrete=_fewest(layer, dims), nodes=24, reach=1e4 * _cut_off(layer))
-
-    def faster(s: float) -> int:
-        return int(_static_count(layer, rim, s))
-
-    count = faster(0.0)
-    rates = []
-    for shape in range(count):
-        low, high = 0.0, 1.0
-        while faster(high) > shape:
-            low, high = high, 4.0 * high
-        while high - low > precision * high and high > 1e-12:
-            mid = 0.5 * (low + high) if low > 0.0 else 0.25 * high
-            low, high = (mid, high) if faster(mid) > shape else (low, mid)
-        rates.append(0.5 * (low + high))
-    return np.array(rates)
 
 
 def pinned_lower_roots(
@@ -211,16 +101,20 @@ def pinned_lower_roots(
     >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
     >>> roots = pinned_lower_roots(layer, "cylinder", (0.035,), 1, frequency=50.0)
     >>> [round(float(a) / 9.80665, 2) for a in roots]
-    [13.89, 17.7, 19.83, 20.77]
+    [13.89, 17.7, 19.83, 20.75]
     """
-    _check(layer)
+    check_pinned(layer, kind, dims)
     frequencies = np.array([frequency])
-    sums = _sums(layer, kind, dims, frequencies)
+    sums = sums_for(layer, kind, dims, frequencies)
     rim = rim_modes(kind, dims, order, discrete=sums.discrete, nodes=sums.nodes, reach=sums.reach)
     stop = amplitude_bound * (2.0 * np.pi * frequencies) ** 2
     half, start = _halves(layer, [rim], frequencies, growth, stop, subharmonic=False)
-    count = int(_static_count(layer, rim, growth))
-    return np.array([float(_last_above(half, start, stop, left)[0]) for left in range(count - 1, -1, -1)])
+    count = int(static_pinned_count(layer, rim, growth))
+    roots = []
+    for left in range(count - 1, -1, -1):
+        low, high = _last_above(half, start, stop, left)
+        roots.append(float(_bisected(half, low, high, left)[0]) if np.isfinite(high[0]) else math.inf)
+    return np.array(roots)
 
 
 def pinned_edges(
@@ -269,37 +163,42 @@ def pinned_edges(
     >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
     >>> edges = pinned_edges(layer, "cylinder", (0.035,), [50.0])
     >>> round(float(edges.lower[0]) / 9.80665, 2), int(edges.lower_order[0])
-    (20.77, 1)
+    (20.75, 1)
     """
-    _check(layer)
+    check_pinned(layer, kind, dims)
     f = np.asarray(frequencies, np.float64)
-    sums = _sums(layer, kind, dims, f)
-    finer = _Sums(sums.discrete + sums.discrete // 2, sums.nodes + 8, 3.0 * sums.reach)
+    sums = sums_for(layer, kind, dims, f)
+    finer = Sums(sums.discrete + sums.discrete // 2, sums.nodes + 8, 3.0 * sums.reach)
     w = 2.0 * np.pi * f
     stop = amplitude_bound * w * w
     lower, upper = np.zeros(len(f)), np.full(len(f), np.inf)
     lower_order, upper_order = np.full(len(f), -1), np.full(len(f), -1)
     upper_subharmonic = np.zeros(len(f), np.bool_)
-    beyond = 1.1 * _resonance(layer, 0.5 * w)
+    beyond = sharp_resonance(layer, 0.5 * w)
     first = 0
-    while True:
+    active = np.arange(len(f))
+    while len(active):
         orders = range(first, first + _ORDERS_AT_ONCE)
         rims = [rim_modes(kind, dims, m, discrete=sums.discrete, nodes=sums.nodes, reach=sums.reach) for m in orders]
-        falling = np.array([_static_count(layer, rim, growth) for rim in rims])
-        longest = np.array([rim.wavenumbers[0] for rim in rims])
-        if first and not falling.any() and np.min(longest) > np.max(beyond):
-            cap = np.minimum(upper, stop)
-            if np.all(_sliding_upper(layer, longest, w, growth, cap) >= cap):
+        falling = np.array([static_pinned_count(layer, rim, growth) for rim in rims])
+        if first and not falling.any():
+            longest = np.array([rim.wavenumbers[0] for rim in rims])
+            cap = np.minimum(upper, stop)[active]
+            holds = _sliding_upper(layer, longest, w[active], growth, cap) >= cap
+            active = active[~(holds & (np.min(longest) > beyond[active]))]
+            if not len(active):
                 break
-        low, high, subharmonic = _block_edges(layer, rims, falling, f, growth, np.minimum(upper, stop), stop)
-        higher = np.max(low, axis=0) > lower
-        lower_order[higher] = first + np.argmax(low, axis=0)[higher]
-        lower = np.maximum(lower, np.max(low, axis=0))
-        less = np.min(high, axis=0) < upper
+        cap = np.minimum(upper, stop)[active]
+        low, high, subharmonic = _block_edges(layer, rims, falling, f[active], growth, cap, stop[active])
+        here, across = np.arange(len(active)), np.max(low, axis=0)
+        higher = across > lower[active]
+        lower_order[active[higher]] = first + np.argmax(low, axis=0)[higher]
+        lower[active] = np.maximum(lower[active], across)
         which = np.argmin(high, axis=0)
-        upper_order[less] = first + which[less]
-        upper_subharmonic[less] = subharmonic[which, np.arange(len(f))][less]
-        upper = np.minimum(upper, np.min(high, axis=0))
+        less = high[which, here] < upper[active]
+        upper_order[active[less]] = first + which[less]
+        upper_subharmonic[active[less]] = subharmonic[which, here][less]
+        upper[active] = np.minimum(upper[active], high[which, here])
         first += _ORDERS_AT_ONCE
 
     def again(edge: Real, order: Whole, chosen: npt.NDArray[np.bool_], subharmonic: bool) -> Real:
@@ -326,50 +225,53 @@ def _block_edges(
     shape = (len(rims), len(f))
     half, start = _halves(layer, rims, f, growth, stop, subharmonic=False)
     caps, stops = np.tile(cap, len(rims)), np.tile(stop, len(rims))
-    low = np.zeros(half.heights.shape[0])
+    low = np.zeros(len(half))
     chosen = np.flatnonzero(np.repeat(falling > 0, len(f)))
     if len(chosen):
-        low[chosen] = _last_above(half.take(chosen), start[chosen], stops[chosen], 0)
-        start[chosen] = low[chosen] * (1.0 + 1e-9)
-    turns = _turns(half, caps)
+        part = half.take(chosen)
+        below, above = _last_above(part, start[chosen], stops[chosen], 0)
+        finite = np.flatnonzero(np.isfinite(above))
+        low[chosen] = np.inf
+        low[chosen[finite]] = refined(
+            part.take(finite).margin, below[finite], above[finite], precision=1e-9, take=part.take(finite).take
+        )
+        start[chosen] = low[chosen] * (1.0 + 1e-8)
+    sub, sub_start = _halves(layer, rims, f, growth, stop, subharmonic=True)
+    subharmonic = first_crossing(sub, sub_start, caps, turns=_turns(sub, caps))
+    # only the least root of all orders counts, so the harmonic search may end there
+    caps = np.minimum(caps, np.tile(np.min(subharmonic.reshape(shape), axis=0), len(rims)))
     start = np.where(np.isfinite(start), start, 2.0 * caps)
-    harmonic = first_crossing(half, start, caps, turns=turns)
-    half, start = _halves(layer, rims, f, growth, stop, subharmonic=True)
-    subharmonic = first_crossing(half, start, np.minimum(caps, harmonic), turns=turns)
+    harmonic = first_crossing(half, start, caps, turns=_turns(half, caps))
     return low.reshape(shape), np.minimum(harmonic, subharmonic).reshape(shape), (subharmonic < harmonic).reshape(shape)
 
 
-def _last_above(half: PinnedHalf, start: Real, stop: Real, left: int) -> Real:
-    """Return the acceleration from which on at most `left` shapes are left that fall; infinity if beyond `stop`."""
-    result = np.full(len(start), np.inf)
-    index = np.flatnonzero(half.count(start) > left)
-    result[half.count(start) <= left] = 0.0
-    low = start[index]
-    brackets: list[tuple[npt.NDArray[np.intp], Real, Real]] = []
+def _last_above(half: PinnedHalf, start: Real, stop: Real, left: int) -> tuple[Real, Real]:
+    """Return brackets of the acceleration above which at most `left` shapes fall; infinite beyond `stop`."""
+    low, high = np.zeros(len(start)), np.full(len(start), np.inf)
+    many = half.count(start) > left
+    high[~many] = 0.0
+    index = np.flatnonzero(many)
+    at = start[index]
+    low[index] = at
     while len(index):
-        high = np.minimum(low * math.exp(_LOWER_STEP), stop[index])
-        passed = half.take(index).count(high) <= left
-        if passed.any():
-            brackets.append((index[passed], low[passed], high[passed]))
-        keep = ~passed & (high < stop[index])
-        index, low = index[keep], high[keep]
-    if brackets:
-        where = np.concatenate([b[0] for b in brackets])
-        part = half.take(where)
-        root = _bisected(
-            lambda a: part.count(a) > left, np.concatenate([b[1] for b in brackets]), np.concatenate([b[2] for b in brackets])
-        )
-        result[where] = root
-    return result
+        after = np.minimum(at * math.exp(_LOWER_STEP), stop[index])
+        passed = half.take(index).count(after) <= left
+        low[index] = np.where(passed | (after < stop[index]), at, stop[index])
+        high[index[passed]] = after[passed]
+        keep = ~passed & (after < stop[index])
+        index, at = index[keep], after[keep]
+    return low, high
 
 
-def _bisected(falls: Callable[[Real], npt.NDArray[np.bool_]], low: Real, high: Real) -> Real:
-    """Return the point in each bracket where `falls` turns from true to false, to 1e-10."""
+def _bisected(half: PinnedHalf, low: Real, high: Real, left: int) -> Real:
+    """Return the point in each bracket from which on at most `left` falling shapes are left, to 1e-10."""
     low, high = low.copy(), high.copy()
-    while np.max(high / low) > 1.0 + 1e-10:
+    for _ in range(50):
         mid = np.sqrt(low * high)
-        still = falls(mid)
+        still = half.count(mid) > left
         low, high = np.where(still, mid, low), np.where(still, high, mid)
+        if np.all(high <= low * (1.0 + 1e-10)):
+            break
     return np.sqrt(low * high)
 
 
@@ -377,7 +279,7 @@ def _refined_edge(
     layer: PinnedLayer,
     kind: str,
     dims: Sequence[float],
-    sums: _Sums,
+    sums: Sums,
     f: Real,
     growth: float,
     edge: Real,
@@ -431,33 +333,13 @@ def _halves(
     b = np.repeat(np.stack([rim.heights for rim in rims]), count, axis=0)
     ws = np.tile(w, len(rims))
     reach = reach_factors(layer.density, layer.viscosity, layer.surface_tension, ws)
-    rows = int(2.0 * np.max(harmonics_at_work(np.tile(stop, len(rims)), reach))) + 8 + spare
-    half = PinnedHalf.of(layer, k, b, ws, reach, growth, rows, subharmonic=subharmonic)
+    half = PinnedHalf.of(layer, k, b, ws, reach, growth, np.tile(stop, len(rims)), subharmonic=subharmonic, extra=spare)
     least = np.repeat([np.min(layer.static_impedance(rim.wavenumbers)) for rim in rims], count)
     d = 2.0 / layer.density * ws * least
     if subharmonic:
         return half, 0.25 * d
-    q = np.repeat([_smallest_stiffness(layer, rim, growth) for rim in rims], count)
+    q = np.repeat([smallest_stiffness(layer, rim, growth) for rim in rims], count)
     return half, 0.5 * np.minimum(np.sqrt(q * d), d)
-
-
-def _smallest_stiffness(layer: PinnedLayer, rim: RimModes, growth: float) -> float:
-    """Return about half the size of the static stiffness of the pinned shape nearest to neutral, m/s^2."""
-    a0 = layer.coefficient(growth, rim.wavenumbers).real
-    # the shapes near neutral hardly feel modes much stiffer; leaving these out keeps the small eigenvalues accurate
-    kept = a0 < 1e4 * max(abs(float(np.min(a0))), float(np.partition(a0, 3)[3]))
-    basis = np.linalg.qr(rim.heights[:, kept].T, mode="complete")[0][:, len(rim.heights) :]
-    values = np.linalg.eigvalsh(basis.T @ (a0[kept, None] * basis))
-    return 0.5 * float(np.min(np.abs(values)))
-
-
-def _static_count(layer: PinnedLayer, rim: RimModes, s: float) -> int:
-    """Return the number of pinned shapes that grow faster than s when the layer is not shaken."""
-    a0 = layer.coefficient(s, rim.wavenumbers).real
-    matrix = (rim.heights / a0) @ rim.heights.T
-    scale = 1.0 / np.sqrt(np.sum(rim.heights**2 / np.abs(a0), axis=1))
-    positive = np.sum(np.linalg.eigvalsh(matrix * scale[:, None] * scale) > 0.0)
-    return int(np.sum(a0 < 0.0) + positive - len(rim.heights))
 
 
 def _sliding_upper(layer: PinnedLayer, k: Real, w: Real, growth: float, cap: Real) -> Real:
@@ -469,55 +351,10 @@ def _sliding_upper(layer: PinnedLayer, k: Real, w: Real, growth: float, cap: Rea
         half = Half.of(layer, ks, ws, growth, rows, subharmonic=subharmonic)
         start = half.root_free_below()
         result = np.minimum(result, first_crossing(half, start, caps, turns=np.sqrt(ks) / ws))
-    return np.min(result.reshape(len(k), len(w)), axis=0)
+    least: Real = np.min(result.reshape(len(k), len(w)), axis=0)
+    return least
 
 
 def _turns(half: PinnedHalf, stop: Real) -> Real:
-    return harmonics_at_work(stop, half.reach) / np.sqrt(stop)
-
-
-def _resonance(layer: PinnedLayer, w: Real) -> Real:
-    """Return the wavenumber of the inviscid deep wave of angular frequency w under tension alone, 1/m."""
-    # gravity pulls the inverted layer down: k^2 - (k_c)^2 instead of k^2; k < k_tension + k_c bounds it
-    return (layer.density * w * w / layer.surface_tension) ** (1.0 / 3.0) + _cut_off(layer)
-
-
-def _cut_off(layer: PinnedLayer) -> float:
-    return math.sqrt(layer.density * 9.80665 / layer.surface_tension)
-
-
-def _fewest(layer: PinnedLayer, dims: Sequence[float]) -> int:
-    return max(2 * FEWEST_DISCRETE, math.ceil(2.0 * _cut_off(layer) * _span(dims) / math.pi))
-
-
-def _span(dims: Sequence[float]) -> float:
-    return dims[0] if len(dims) == 1 else dims[-1] - dims[0]
-
-
-def _sums(layer: PinnedLayer, kind: str, dims: Sequence[float], f: Real) -> _Sums:
-    """Return how finely to sum: every mode up to well past the resonances that viscosity leaves sharp."""
-    w = 2.0 * np.pi * float(np.max(f))
-    nu = layer.viscosity / layer.density
-    shortest = 1.3 * _cut_off(layer)
-    for n in (0.5, 1.0, 1.5, 2.0, 2.5, 3.0):
-        k = float(_resonance(layer, np.array([n * w]))[0])
-        if nu * k * k < n * w:
-            shortest = max(shortest, 1.3 * k)
-    families = 1 if kind == "cylinder" else 2
-    discrete = families * FEWEST_DISCRETE + math.ceil(shortest * _span(dims) / math.pi)
-    if discrete > _MOST_DISCRETE:
-        raise NotComputableError(
-            f"pinned contact line at {float(np.max(f)):.4g} Hz: {discrete} modes of each order would have to be summed one "
-            f"by one, at most {_MOST_DISCRETE} can be; the vessel is too wide for its waves, or the frequency too high"
-        )
-    reach = 10.0 * max(shortest, 6.0 * layer.viscosity * w / layer.surface_tension)
-    start = discrete * math.pi / _span(dims)
-    return _Sums(discrete, math.ceil(1.6 * math.log(max(reach / start, 30.0))) + 6, reach)
-
-
-def _check(layer: PinnedLayer) -> None:
-    if not layer.surface_tension > 0.0:
-        raise InputError(
-            f"surface tension {layer.surface_tension} N/m with a pinned contact line: must be positive, "
-            "a rim holds the surface by tension alone"
-        )
+    result: Real = harmonics_at_work(stop, half.reach) / np.sqrt(stop)
+    return result

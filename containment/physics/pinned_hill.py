@@ -6,7 +6,7 @@ multiplier lambda_n for each harmonic (two in a ring: one for each rim),
     A_nj zeta_nj - a (zeta_{n-1,j} + zeta_{n+1,j}) = b_j lambda_n,      sum over j of b_j zeta_nj = 0
 
 The system is conjugate about its middle, and complex symmetric, so it is the stationarity of a real quadratic form. All
-of it but the middle row can be eliminated by continued fractions, mode by mode; what is left is a real symmetric matrix:
+of it but the middle row can be eliminated by continued fractions, mode by mode; a real symmetric matrix is left:
 
     harmonic      Q zeta_0 = b lambda_0 for real zeta_0: Q is the effective stiffness of the surface under shaking
     subharmonic   Q zeta_0 - a conj(zeta_0) = b lambda_0: neutral where a singular value of Q, on the surfaces that
@@ -42,6 +42,9 @@ Whole = npt.NDArray[np.intp]
 
 _LARGEST_EXPONENT: Final = 300.0
 
+SPARE_ROWS: Final = 5
+"""Rows beyond 2 n*: enough to find the edges to 1e-8; they are refined with more."""
+
 
 @dataclass(frozen=True, slots=True)
 class PinnedHalf:
@@ -59,6 +62,8 @@ class PinnedHalf:
         Factors c1 and c2: the harmonics up to n* = min(c1 a^(3/4), c2 a^(2/3)) are at work, see `reach`.
     subharmonic : bool
         Which of the two systems it is.
+    extra : int
+        Rows beyond 2 n* + 5.
     """
 
     coefficients: Complex
@@ -66,6 +71,7 @@ class PinnedHalf:
     scale: Real
     reach: Real
     subharmonic: bool
+    extra: int = 0
 
     @classmethod
     def of(
@@ -76,15 +82,20 @@ class PinnedHalf:
         w: Real,
         reach: Real,
         growth: float,
-        rows: int,
+        stop: Real,
         *,
         subharmonic: bool,
+        extra: int = 0,
     ) -> Self:
-        """Evaluate the coefficients: wavenumbers (cases, modes), heights (cases, rims, modes), w (cases,)."""
+        """Evaluate the coefficients for accelerations up to `stop`.
+
+        Shapes: wavenumbers (cases, modes), heights (cases, rims, modes), w and stop (cases,), reach (2, cases).
+        """
+        rows = int(2.0 * np.max(harmonics_at_work(stop, reach))) + SPARE_ROWS + extra
         steps = np.arange(rows + 1)[:, None, None] + (0.5 if subharmonic else 0.0)
         coefficients = layer.coefficient(growth + 1j * steps * w[:, None], wavenumbers)
         scale = 1.0 / np.sqrt(np.einsum("crk,nck->cnr", heights**2, 1.0 / np.abs(coefficients)))
-        return cls(coefficients, heights, scale, reach, subharmonic)
+        return cls(coefficients, heights, scale, reach, subharmonic, extra)
 
     def __len__(self) -> int:
         """Return the number of cases."""
@@ -98,6 +109,7 @@ class PinnedHalf:
             self.scale[chosen],
             self.reach[:, chosen],
             self.subharmonic,
+            self.extra,
         )
 
     def margin(self, acceleration: Real) -> Real:
@@ -115,7 +127,7 @@ class PinnedHalf:
     def _determinant(self, acceleration: Real) -> tuple[Real, Whole]:
         a = acceleration[:, None]
         top = float(np.max(harmonics_at_work(acceleration, self.reach), initial=0.0))
-        rows = min(len(self.coefficients) - 1, int(2.0 * top) + 8)
+        rows = min(len(self.coefficients) - 1, int(2.0 * top) + SPARE_ROWS + self.extra)
         A = self.coefficients[: rows + 1]  # noqa: N806
         ratio = np.empty_like(A)  # a / (A_n - a^2 / (A_{n+1} - ...)): zeta_n / zeta_{n-1} outside the rim's reach
         ratio[rows] = a / A[rows]
@@ -132,7 +144,7 @@ class PinnedHalf:
     def _outer_block(self, a: Real, A: Complex, ratio: Complex) -> Complex:  # noqa: N803
         """Return P, shape (cases, N, rims, N, rims): sum over modes of b b^T times the inverse of the rows n >= 1."""
         rows = len(A) - 1
-        cases, rims, modes = self.heights.shape
+        cases, rims, _ = self.heights.shape
         forward = A[1]
         cells = np.empty_like(A[1:])
         for n in range(1, rows + 1):
@@ -140,17 +152,19 @@ class PinnedHalf:
                 forward = A[n] - a * a / forward
             # A_n - a^2/eps_{n+1} is a / ratio_n
             cells[n - 1] = 1.0 / (a / ratio[n] + forward - A[n])
-        pairs = np.einsum("crk,csk->ckrs", self.heights, self.heights).reshape(cases, modes, rims * rims)
         result = np.zeros((cases, rows, rims, rows, rims), np.complex128)
         index = np.arange(rows)
-        for offset in range(rows):
-            if offset:
-                cells = cells[:-1] * ratio[1 + offset :]
-            # shape (cases, n, rims * rims): numpy's matmul of complex with real, one case at a time
-            value = (cells.transpose(1, 0, 2) @ pairs).reshape(cases, rows - offset, rims, rims)
-            low, high = index[: rows - offset], index[offset:]
-            result[:, low, :, high, :] = value.transpose(1, 0, 2, 3)
-            result[:, high, :, low, :] = value.transpose(1, 0, 2, 3)
+        for one in range(rims):
+            for other in range(one + 1):
+                part = cells * (self.heights[:, one] * self.heights[:, other])
+                for offset in range(rows):
+                    if offset:
+                        part = part[:-1] * ratio[1 + offset :]
+                    value = np.add.reduce(part, axis=-1)
+                    low, high = index[: rows - offset], index[offset:]
+                    for row, column in ((low, high), (high, low)):
+                        result[:, row, one, column, other] = value.T
+                        result[:, row, other, column, one] = value.T
         return result
 
     def _harmonic(self, g: Real, g0: Real, descent: Complex, block: Complex) -> tuple[Real, Whole]:
@@ -174,8 +188,9 @@ class PinnedHalf:
         d = a * a - (g.real**2 + g.imag**2)
         # zeta_0 = x + i y; b h . lambda drives x by its real part and y by minus its imaginary part
         real, imag = descent.real, descent.imag
-        on_x = np.einsum("vck,crk->cvrk", np.concatenate([real, -imag]), self.heights).reshape(cases, 2 * rims * (1 + rows), modes)
-        on_y = np.einsum("vck,crk->cvrk", np.concatenate([-imag, -real]), self.heights).reshape(cases, 2 * rims * (1 + rows), modes)
+        shape = (cases, 2 * rims * (1 + rows), modes)
+        on_x = np.einsum("vck,crk->cvrk", np.concatenate([real, -imag]), self.heights).reshape(shape)
+        on_y = np.einsum("vck,crk->cvrk", np.concatenate([-imag, -real]), self.heights).reshape(shape)
         by_d = 1.0 / d[:, None, :]
         gr, gi, aa = g.real[:, None, :], g.imag[:, None, :], a[:, :, None]
         left_x = by_d * ((-gr - aa) * on_x + gi * on_y)
@@ -216,7 +231,7 @@ def _add_form(matrix: Real, p: Complex, real_from: int, imag_from: int) -> None:
 
 
 def _inertia(matrix: Real, scale: Real, logs: Real, offset: Whole) -> tuple[Real, Whole]:
-    """Return the size of the determinant and the count: positive eigenvalues plus the offset of the eliminated parts."""
+    """Return the size of the determinant, and the count: positive eigenvalues plus what the eliminated parts add."""
     eigenvalues = np.linalg.eigvalsh(matrix * scale[:, :, None] * scale[:, None, :])
     logs = logs + np.sum(np.log(np.maximum(np.abs(eigenvalues), 1e-300)), axis=1)
     count = np.sum(eigenvalues > 0.0, axis=1) + offset

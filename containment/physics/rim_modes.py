@@ -1,10 +1,10 @@
 r"""Sliding modes of a round or ring-shaped vessel with the weight of each at the rim, summed to infinity.
 
-A pinned rim needs sums over all sliding modes of one circumferential order, sum over j of b_j b_j^T f(k_j), with b_j the
-height at the rim of the mode of unit norm. Cut after M modes they converge like 1/M only, and make the surface too stiff.
-Here the first J modes are summed one by one and the rest by Euler and Maclaurin's formula: the integral over the
-density of modes dj/dk (Gauss nodes in log k, the last panel in 1/k), with the end corrections put on the last discrete
-modes by backward differences. The nodes act as further modes of positive weight.
+A pinned rim needs sums over all sliding modes of one order m, sum over j of b_j b_j^T f(k_j), with b_j the height at
+the rim of the mode of unit norm. Cut after M modes they converge like 1/M only, and make the surface too stiff. Here the
+first J modes are summed one by one and the rest by Euler and Maclaurin's formula: the integral over the density of modes
+dj/dk (Gauss nodes in log k, the last panel in 1/k), with the end corrections put on the last discrete modes by backward
+differences. The nodes act as further modes of positive weight.
 
 The density follows from the phase of J' + i Y': with N^2(x) = J'^2 + Y'^2 it turns by 2 (x^2 - m^2) / (pi x^3 N^2).
 """
@@ -81,7 +81,7 @@ def cylinder_rim(*, radius: float, order: int, discrete: int, reach: float, node
 
     >>> rim = cylinder_rim(radius=1.0, order=1, discrete=24, reach=1e3, nodes=12)
     >>> k = 3.831705970207512
-    >>> abs(np.sum(rim.heights[0] ** 2 / (rim.wavenumbers**2 - k**2))) < 1e-7
+    >>> bool(abs(np.sum(rim.heights[0] ** 2 / (rim.wavenumbers**2 - k**2))) < 1e-7)
     True
     """
     from scipy.special import jnp_zeros  # slow to import, and only pinned rims need it
@@ -127,8 +127,7 @@ def annulus_rim(*, inner: float, outer: float, order: int, discrete: int, reach:
         sign = -sign  # the uniform mode, which is left out, is the first of its family
     weights = np.empty(discrete)
     families = [slice(discrete - 1 - 2 * ((discrete - 1) // 2), None, 2), slice(discrete % 2, None, 2)]
-    parts_k, parts_b = [k], []
-    tails = []
+    parts_k, tails = [k], []
     for family in families:
         members = k[family]
         weights[family] = _end_weights(len(members))

@@ -1,0 +1,224 @@
+r"""Layer at rest whose contact line is pinned at the rim (brimful): growth rates, and how finely to sum its modes.
+
+The surface is made of the sliding modes, held at rest along the rim by one Lagrange multiplier for each order
+(two in a ring). With M(s) = sum over j of b_j b_j^T / A(s; k_j) a shape grows at the rate s where M(s) is singular.
+
+References
+----------
+Benjamin, T. B. & Scott, J. C. (1979), J. Fluid Mech. 92, 241-267 (pinned edge; from memory).
+"""
+
+import math
+from collections.abc import Sequence
+from dataclasses import dataclass
+from typing import Final, Protocol
+
+import numpy as np
+import numpy.typing as npt
+
+from containment.constants import STANDARD_GRAVITY
+from containment.errors import InputError, NotComputableError
+from containment.physics.rim_modes import FEWEST_DISCRETE, RimModes, annulus_rim, cylinder_rim
+
+__all__ = [
+    "PinnedLayer",
+    "Sums",
+    "check_pinned",
+    "rim_modes",
+    "sharp_resonance",
+    "smallest_stiffness",
+    "static_pinned_count",
+    "static_pinned_growth",
+    "sums_for",
+]
+
+Real = npt.NDArray[np.float64]
+Complex = npt.NDArray[np.complex128]
+
+_MOST_DISCRETE: Final = 240
+
+
+class PinnedLayer(Protocol):
+    """What a pinned surface needs to know of a layer; `containment.physics.dispersion.Layer` is one."""
+
+    @property
+    def density(self) -> float:
+        """Return rho, kg/m^3."""
+        ...
+
+    @property
+    def viscosity(self) -> float:
+        """Return mu, Pa s."""
+        ...
+
+    @property
+    def surface_tension(self) -> float:
+        """Return gamma, N/m."""
+        ...
+
+    def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
+        """Return A(s; k), m/s^2."""
+        ...
+
+    def static_impedance(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return Z(0; k), Pa s/m."""
+        ...
+
+
+@dataclass(frozen=True, slots=True)
+class Sums:
+    """How finely the sums over the modes are taken."""
+
+    discrete: int
+    nodes: int
+    reach: float
+
+
+def rim_modes(kind: str, dims: Sequence[float], order: int, *, discrete: int, nodes: int, reach: float) -> RimModes:
+    """Return the modes of one circumferential order.
+
+    Parameters
+    ----------
+    kind : str
+        "cylinder" with dims (radius,), or "annulus" with dims (inner radius, outer radius), m.
+    dims : sequence of float
+    order, discrete, nodes, reach
+        See `containment.physics.rim_modes.cylinder_rim`.
+    """
+    if kind == "cylinder":
+        return cylinder_rim(radius=dims[0], order=order, discrete=discrete, nodes=nodes, reach=reach)
+    return annulus_rim(inner=dims[0], outer=dims[1], order=order, discrete=discrete, nodes=nodes, reach=reach)
+
+
+def static_pinned_growth(
+    layer: PinnedLayer, kind: str, dims: Sequence[float], order: int, *, precision: float = 1e-10
+) -> Real:
+    """Return the growth rates of the pinned shapes of one order that fall when the layer is not shaken.
+
+    Parameters
+    ----------
+    layer : PinnedLayer
+        The layer.
+    kind, dims
+        Vessel, see `rim_modes`.
+    order : int
+        Circumferential order m.
+    precision : float
+        Relative precision of the growth rates.
+
+    Returns
+    -------
+    array, shape (shapes,)
+        s, 1/s, in falling order; empty when the layer at rest holds.
+
+    Notes
+    -----
+    With M(s) = sum over j of b_j b_j^T / A(s; k_j), the number of shapes that grow faster than s is the number of
+    negative A(s; k_j) plus the number of positive eigenvalues of M less the number of rims; s is bisected on it.
+
+    Examples
+    --------
+    Water pinned at the rim does not fall while R < 3.8317 l_c; when it slides, it does not while R < 1.8412 l_c.
+
+    >>> from containment.physics.dispersion import Layer
+    >>> water = Layer(density=998.0, viscosity=1e-3, surface_tension=0.0728, depth=0.05)
+    >>> [len(static_pinned_growth(water, "cylinder", (radius,), 1)) for radius in (0.0104, 0.0105)]
+    [0, 1]
+    """
+    check_pinned(layer, kind, dims)
+    rim = rim_modes(kind, dims, order, discrete=_fewest(layer, dims), nodes=24, reach=1e4 * _cut_off(layer))
+
+    def faster(s: float) -> int:
+        return int(static_pinned_count(layer, rim, s))
+
+    count = faster(0.0)
+    rates = []
+    for shape in range(count):
+        low, high = 0.0, 1.0
+        while faster(high) > shape:
+            low, high = high, 4.0 * high
+        while high - low > precision * high and high > 1e-12:
+            mid = 0.5 * (low + high) if low > 0.0 else 0.25 * high
+            low, high = (mid, high) if faster(mid) > shape else (low, mid)
+        rates.append(0.5 * (low + high))
+    return np.array(rates)
+
+
+def static_pinned_count(layer: PinnedLayer, rim: RimModes, s: float) -> int:
+    """Return the number of pinned shapes that grow faster than s when the layer is not shaken."""
+    a0 = layer.coefficient(s, rim.wavenumbers).real
+    matrix = (rim.heights / a0) @ rim.heights.T
+    scale = 1.0 / np.sqrt(np.sum(rim.heights**2 / np.abs(a0), axis=1))
+    positive = np.sum(np.linalg.eigvalsh(matrix * scale[:, None] * scale) > 0.0)
+    return int(np.sum(a0 < 0.0) + positive - len(rim.heights))
+
+
+def smallest_stiffness(layer: PinnedLayer, rim: RimModes, growth: float) -> float:
+    """Return about half the size of the static stiffness of the pinned shape nearest to neutral, m/s^2."""
+    a0 = layer.coefficient(growth, rim.wavenumbers).real
+    # the shapes near neutral hardly feel modes much stiffer; leaving these out keeps the small eigenvalues accurate
+    kept = a0 < 1e4 * max(abs(float(np.min(a0))), float(np.partition(a0, 3)[3]))
+    basis = np.linalg.qr(rim.heights[:, kept].T, mode="complete")[0][:, len(rim.heights) :]
+    values = np.linalg.eigvalsh(basis.T @ (a0[kept, None] * basis))
+    return 0.5 * float(np.min(np.abs(values)))
+
+
+def sharp_resonance(layer: PinnedLayer, w: Real) -> Real:
+    """Return a wavenumber beyond the resonance of angular frequency w where viscosity leaves it sharp, else 0, 1/m.
+
+    The deep inviscid wave has w^2 = gamma k^3/rho -+ g k, so k < (rho w^2/gamma)^(1/3) + k_c.
+    """
+    k = (layer.density * w * w / layer.surface_tension) ** (1.0 / 3.0) + _cut_off(layer)
+    return np.where(layer.viscosity / layer.density * k * k < w, 1.1 * k, 0.0)
+
+
+def _cut_off(layer: PinnedLayer) -> float:
+    return math.sqrt(layer.density * STANDARD_GRAVITY / layer.surface_tension)
+
+
+def _fewest(layer: PinnedLayer, dims: Sequence[float]) -> int:
+    return max(2 * FEWEST_DISCRETE, math.ceil(2.0 * _cut_off(layer) * _span(dims) / math.pi))
+
+
+def _span(dims: Sequence[float]) -> float:
+    return dims[0] if len(dims) == 1 else dims[-1] - dims[0]
+
+
+def sums_for(layer: PinnedLayer, kind: str, dims: Sequence[float], f: Real) -> Sums:
+    """Return how finely to sum: every mode up to well past the resonances that viscosity leaves sharp."""
+    w = 2.0 * np.pi * float(np.max(f))
+    harmonics = np.arange(1, 7) / 2.0
+    shortest = 1.2 * max(_cut_off(layer), float(np.max(sharp_resonance(layer, harmonics * w))))
+    families = 1 if kind == "cylinder" else 2
+    discrete = families * FEWEST_DISCRETE + math.ceil(shortest * _span(dims) / math.pi)
+    if discrete > _MOST_DISCRETE:
+        raise NotComputableError(
+            f"pinned contact line at {float(np.max(f)):.4g} Hz: {discrete} modes of each order would have to be summed "
+            f"one by one, at most {_MOST_DISCRETE} can be; the vessel is too wide for its waves, or the frequency too "
+            "high"
+        )
+    reach = 10.0 * max(shortest, 6.0 * layer.viscosity * w / layer.surface_tension)
+    start = discrete * math.pi / _span(dims)
+    return Sums(discrete, math.ceil(1.6 * math.log(max(reach / start, 30.0))) + 6, reach)
+
+
+def check_pinned(layer: PinnedLayer, kind: str, dims: Sequence[float]) -> None:
+    """Refuse what a pinned contact line can't be computed for.
+
+    Raises
+    ------
+    InputError
+        No surface tension, another kind of vessel, or radii that are not positive and in rising order.
+    """
+    if not layer.surface_tension > 0.0:
+        raise InputError(
+            f"surface tension {layer.surface_tension} N/m with a pinned contact line: must be positive, "
+            "a rim holds the surface by tension alone"
+        )
+    if (kind, len(dims)) not in (("cylinder", 1), ("annulus", 2)):
+        raise InputError(
+            f"pinned contact line in a vessel of kind {kind!r} with {len(dims)} dimensions: only a cylinder (radius) "
+            "and an annulus (inner, outer radius) can be computed"
+        )
+    if not 0.0 < dims[0] <= dims[-1] < math.inf or (len(dims) == 2 and dims[0] == dims[1]):
+        raise InputError(f"radii {tuple(dims)} m of a {kind}: must be positive and in rising order")
