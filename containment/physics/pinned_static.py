@@ -24,6 +24,7 @@ __all__ = [
     "PinnedLayer",
     "Sums",
     "check_pinned",
+    "pinned_wave_frequencies",
     "rim_modes",
     "sharp_resonance",
     "smallest_stiffness",
@@ -144,9 +145,79 @@ def static_pinned_growth(
     return np.array(rates)
 
 
+def pinned_wave_frequencies(
+    kind: str,
+    dims: Sequence[float],
+    order: int,
+    *,
+    density: float,
+    surface_tension: float,
+    depth: float,
+    gravity: float,
+    count: int,
+) -> Real:
+    """Return the natural frequencies of the waves of one order of an inviscid layer that is stable at rest.
+
+    Parameters
+    ----------
+    kind, dims, order
+        Vessel and circumferential order.
+    density, surface_tension, depth, gravity : float
+        rho (kg/m^3), gamma (N/m), h (m), G0 (m/s^2, positive for an upright layer).
+    count : int
+        Number of waves.
+
+    Returns
+    -------
+    array, shape (count,)
+        Hz, in rising order.
+
+    Raises
+    ------
+    InputError
+        The layer at rest falls.
+
+    Notes
+    -----
+    Inviscid, small slopes, flat surface at rest (filled exactly to the brim).
+
+    Examples
+    --------
+    >>> waves = pinned_wave_frequencies(
+    ...     "cylinder", (0.02766,), 1, density=997.0, surface_tension=0.0724, depth=0.038, gravity=9.80665, count=1
+    ... )
+    >>> round(float(waves[0]), 2)
+    4.68
+    """
+    rim = rim_modes(kind, dims, order, discrete=4 * FEWEST_DISCRETE + 2 * count, nodes=24, reach=1e3 / _span(dims))
+    k = rim.wavenumbers
+    stiffness = gravity + surface_tension / density * k * k
+    inertia = 1.0 / (k * np.tanh(k * depth))
+    if _count(rim, stiffness):
+        raise InputError(f"gravity {gravity} m/s^2, pinned layer, order {order}: falls at rest, so it has no wave")
+
+    def slower(w: float) -> int:
+        return _count(rim, stiffness - w * w * inertia)
+
+    result = []
+    for wave in range(count):
+        low, high = 0.0, 1.1 * math.sqrt(stiffness[0] / inertia[0])
+        while slower(high) <= wave:
+            low, high = high, 2.0 * high
+        while high - low > 1e-12 * high:
+            mid = 0.5 * (low + high)
+            low, high = (low, mid) if slower(mid) > wave else (mid, high)
+        result.append(0.5 * (low + high) / (2.0 * math.pi))
+    return np.array(result)
+
+
 def static_pinned_count(layer: PinnedLayer, rim: RimModes, s: float) -> int:
     """Return the number of pinned shapes that grow faster than s when the layer is not shaken."""
-    a0 = layer.coefficient(s, rim.wavenumbers).real
+    return _count(rim, layer.coefficient(s, rim.wavenumbers).real)
+
+
+def _count(rim: RimModes, a0: Real) -> int:
+    """Return the number of negative values of the form a0 on the surfaces that keep the rim at rest."""
     matrix = (rim.heights / a0) @ rim.heights.T
     scale = 1.0 / np.sqrt(np.sum(rim.heights**2 / np.abs(a0), axis=1))
     positive = np.sum(np.linalg.eigvalsh(matrix * scale[:, None] * scale) > 0.0)

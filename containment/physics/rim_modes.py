@@ -1,10 +1,10 @@
 r"""Sliding modes of a round or ring-shaped vessel with the weight of each at the rim, summed to infinity.
 
 A pinned rim needs sums over all sliding modes of one order m, sum over j of b_j b_j^T f(k_j), with b_j the height at
-the rim of the mode of unit norm. Cut after M modes they converge like 1/M only, and make the surface too stiff. Here the
-first J modes are summed one by one and the rest by Euler and Maclaurin's formula: the integral over the density of modes
-dj/dk (Gauss nodes in log k, the last panel in 1/k), with the end corrections put on the last discrete modes by backward
-differences. The nodes act as further modes of positive weight.
+the rim of the mode of unit norm. Cut after M modes they converge like 1/M only, and make the surface too stiff. Here
+the first J modes are summed one by one and the rest by Euler and Maclaurin's formula: the integral over the density of
+modes dj/dk (Gauss nodes in log k, the last panel in 1/k), with the end corrections put on the last discrete modes by
+backward differences. The nodes act as further modes of positive weight.
 
 The density follows from the phase of J' + i Y': with N^2(x) = J'^2 + Y'^2 it turns by 2 (x^2 - m^2) / (pi x^3 N^2).
 """
