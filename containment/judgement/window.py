@@ -18,6 +18,9 @@ SEARCH_RANGE: Final = (2.0, 2000.0)
 """Frequencies that are searched where the drive states no range, Hz."""
 
 _NODES: Final = 49
+_LEVELS: Final = 5
+_PER_LEVEL: Final = 22
+_CORNER_PRECISION: Final = 1e-6
 _ZOOM: Final = 9
 _ZOOMS: Final = 8
 _SHARPEST_PEAKS: Final = 4
@@ -221,28 +224,22 @@ def _corners(
     def narrowest(s: _Sample) -> Real:
         return np.where(s.held, -s.openness, np.inf)
 
-    found = []
-    for cost in (least_lower, lowest, narrowest):
+    costs = (least_lower, lowest, narrowest)
+    for _ in range(_LEVELS):  # each level puts new nodes on both sides of the best one of each corner
         f = everything.edges.frequency
-        best = int(np.argmin(cost(everything)))
-        part, at = everything, best
-        low, high = f[max(best - 1, 0)], f[min(best + 1, len(f) - 1)]
-        for _ in range(_ZOOMS):
-            if not high > low * (1.0 + 1e-7):
-                break
-            near = sample(np.geomspace(low, high, _ZOOM))
-            index = int(np.argmin(cost(near)))
-            if cost(near)[index] <= cost(part)[at]:
-                part, at = near, index
-                g = near.edges.frequency
-                low, high = g[max(index - 1, 0)], g[min(index + 1, _ZOOM - 1)]
-            else:  # the known best lies between the nodes
-                middle = part.edges.frequency[at]
-                low, high = (middle / high) ** 0.25 * middle, (high / middle) ** 0.25 * middle
-                low, high = min(low, high), max(low, high)
-        lower, ceiling = float(part.edges.lower[at]), float(part.ceiling[at])
-        if cost is narrowest and lower > 0.0 and math.isfinite(ceiling):
-            found.append(part.point(at, math.sqrt(lower * ceiling)))
-        else:
-            found.append(part.point(at, lower))
+        new = []
+        for cost in costs:
+            best = int(np.argmin(cost(everything)))
+            low, high = f[max(best - 1, 0)], f[min(best + 1, len(f) - 1)]
+            if high > low * (1.0 + _CORNER_PRECISION):
+                new.append(np.geomspace(low, high, _PER_LEVEL + 2)[1:-1])
+        if not new:
+            break
+        everything = _merged([everything, sample(np.unique(np.concatenate(new)))])
+    found = []
+    for cost in costs:
+        at = int(np.argmin(cost(everything)))
+        lower, ceiling = float(everything.edges.lower[at]), float(everything.ceiling[at])
+        inside = cost is narrowest and lower > 0.0 and math.isfinite(ceiling)
+        found.append(everything.point(at, math.sqrt(lower * ceiling) if inside else lower))
     return found[0], found[1], found[2]

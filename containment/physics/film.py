@@ -118,6 +118,18 @@ class FilmedLayer:
         """Return rho times the squared norm of the slow velocity field of unit surface speed, kg/m^2."""
         return self._slow_values(np.asarray(wavenumber, np.float64))[1]
 
+    def added_mass(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return a proven lower bound of Im(Z + c/s) / Im s + c / abs(s)^2 over Re s >= 0, kg/m^2.
+
+        No field of unit surface speed has less kinetic energy than the potential flow (Kelvin), rho / (k tanh kh). A
+        film of finite modulus acts as a spring of unknown share in the motion: nothing is proven, and 0 returned.
+        """
+        k = np.asarray(wavenumber, np.float64)
+        if 0.0 < self.film_modulus < np.inf:
+            return np.zeros_like(k)
+        result: Real = self.density / (k * np.tanh(k * self.depth))
+        return result
+
     def bounds(self, wavenumber: npt.ArrayLike) -> CoefficientBounds:
         """Return the constants of the proven bound of the coefficient; see `smallest_coefficient`."""
         k = np.asarray(wavenumber, np.float64)

@@ -197,6 +197,18 @@ class ViscoelasticLayer:
         """Return rho times the squared norm of the slow velocity field of unit surface speed, kg/m^2."""
         return self._slow_values(np.asarray(wavenumber, np.float64))[1]
 
+    def added_mass(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return a proven lower bound of Im(Z + c/s) / Im s + c / abs(s)^2 over Re s >= 0, kg/m^2.
+
+        Newtonian: no field of unit surface speed has less kinetic energy than the potential flow (Kelvin). Elasticity
+        acts as a spring of unknown share in the motion: nothing is proven, and 0 returned.
+        """
+        k = np.asarray(wavenumber, np.float64)
+        if self.liquid.modulus or self.liquid.polymer:
+            return np.zeros_like(k)
+        result: Real = self.density / (k * np.tanh(k * self.depth))
+        return result
+
     def bounds(self, wavenumber: npt.ArrayLike) -> CoefficientBounds:
         """Return the constants of the proven bound of the coefficient; see `smallest_coefficient`."""
         k = np.asarray(wavenumber, np.float64)

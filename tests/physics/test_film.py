@@ -68,6 +68,9 @@ def test_no_coefficient_is_below_the_bound(liquid, modulus):
     held = layer.stiffness(k) > 0
     assert np.all((size >= floor * (1 - 1e-9))[..., held])
     assert np.all(bound[held] > 0) and np.all(bound[~held] == 0)
+    spring = np.maximum(layer.stiffness(k), 0)
+    massive = 2 / layer.density * (layer.added_mass(k) * RIGHT.imag[..., :1] ** 2 - spring)
+    assert np.all((size >= massive * (1 - 1e-9))[..., held])
     # and the bound is of use: not absurdly far below what occurs
     assert np.median((size.min(axis=(0, 1)) / np.where(held, bound, np.inf))[held]) < 100
 

@@ -114,6 +114,9 @@ def test_no_coefficient_is_below_the_bound(name):
     floor = 2 / liquids.density * liquids.static_impedance(k) * np.abs(RIGHT[..., :1])
     assert np.all((size >= floor * (1 - 1e-9))[..., held])
     assert np.all(bound[held] > 0) and np.all(bound[~held] == 0)
+    spring = np.maximum(liquids.stiffness(k), 0)
+    massive = 2 / liquids.density * (liquids.added_mass(k) * RIGHT.imag[..., :1] ** 2 - spring)
+    assert np.all((size >= massive * (1 - 1e-9))[..., held])
 
 
 @pytest.mark.parametrize("name", list(PAIRS))

@@ -79,6 +79,9 @@ def test_no_coefficient_is_below_the_bound(name):
     assert np.all(size >= bound * (1 - 1e-12))
     floor = 2 / it.density * it.static_impedance(K) * np.abs(RIGHT[..., :1])
     assert np.all((size >= floor * (1 - 1e-9))[..., held])
+    spring = np.maximum(it.stiffness(K), 0)
+    massive = 2 / it.density * (it.added_mass(K) * RIGHT.imag[..., :1] ** 2 - spring)
+    assert np.all((size >= massive * (1 - 1e-9))[..., held])
     if name == "maxwell":
         assert np.all(bound == 0)
     else:
