@@ -10,7 +10,7 @@ import sys
 from collections.abc import Iterable, Sequence
 from typing import TYPE_CHECKING, Final
 
-from containment.judgement.findings import Answer, Caution, Limit
+from containment.judgement.findings import Answer, Caution, Limit, seconds_text
 
 if TYPE_CHECKING:
     from rich.console import RenderableType
@@ -48,20 +48,6 @@ def quantity_text(value: float | None, unit: str, digits: int = 3) -> str:
     if "e" in text and 1e-3 <= abs(scaled) < 1e6:
         text = f"{scaled:.0f}"
     return f"{text} {shown}".rstrip()
-
-
-def seconds_text(seconds: float) -> str:
-    """Return a time in s, min, h or days, to two digits.
-
-    Examples
-    --------
-    >>> seconds_text(0.973), seconds_text(600.0)
-    ('0.97 s', '10 min')
-    """
-    for limit, size, unit in ((120.0, 1.0, "s"), (7200.0, 60.0, "min"), (172800.0, 3600.0, "h")):
-        if seconds < limit:
-            return f"{seconds / size:.2g} {unit}"
-    return f"{seconds / 86400.0:.3g} days"
 
 
 class Screen:

@@ -81,7 +81,7 @@ def liquid_screen(verdict: Verdict, *, plain: bool = False, detail: bool = False
     _case(screen, verdict)
     if verdict.point is not None:
         _point(screen, verdict, verdict.point)
-    elif verdict.window is not None:
+    if verdict.window is not None:
         _corners(screen, verdict)
     _at_rest(screen, verdict)
     screen.limits(verdict.limits)
@@ -118,6 +118,8 @@ def _case(screen: Screen, verdict: Verdict) -> None:
 def _point(screen: Screen, verdict: Verdict, point: OperatingPoint) -> None:
     spectrum = spectrum_of(verdict.vessel)
     a = point.acceleration
+    worst_error = max([e for e in (point.lower_error, point.upper_error) if math.isfinite(e)], default=0.0)
+    known = min(4, max(1, int(-math.log10(max(worst_error, 1e-12)))))  # no digit that is not known
 
     def mode(wavenumber: float) -> str:
         if not math.isfinite(wavenumber) or wavenumber <= 0.0:
@@ -129,7 +131,7 @@ def _point(screen: Screen, verdict: Verdict, point: OperatingPoint) -> None:
             return name, "never", "", "nothing needs holding"
         if math.isinf(value):
             return name, "-", "", "not within the amplitudes searched"
-        return name, quantity_text(value, "m/s^2", 4), f"x {ratio:.3g}", mode(wave)
+        return name, quantity_text(value, "m/s^2", known), f"x {ratio:.3g}", mode(wave)
 
     screen.heading("Margins at this frequency")
     e = point.edges
@@ -194,7 +196,9 @@ def _corners(screen: Screen, verdict: Verdict) -> None:
     if verdict.allowance.growth > 0.0 and strict is not None:
         rows.append(row("least for ever", strict.minimum_acceleration, "edge"))
     screen.rows(rows, right=(1, 2, 3, 4, 5))
-    if window.minimum_acceleration is not None:
+    if window.reason:
+        screen.text(window.reason[:1].upper() + window.reason[1:] + ".")
+    if window.minimum_acceleration is not None and verdict.point is None:
         spectrum = spectrum_of(verdict.vessel)
         least = window.minimum_acceleration
         facts = []

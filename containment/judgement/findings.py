@@ -4,7 +4,7 @@ import enum
 from dataclasses import asdict, dataclass
 from typing import Any
 
-__all__ = ["Answer", "Caution", "Limit", "exit_status"]
+__all__ = ["Answer", "Caution", "Limit", "exit_status", "seconds_text"]
 
 
 class Answer(enum.StrEnum):
@@ -68,3 +68,17 @@ def exit_status(answer: Answer, proven: bool = True) -> int:
     if answer is Answer.NOT_HELD:
         return 1
     return 0 if answer is Answer.HELD and proven else 3
+
+
+def seconds_text(seconds: float) -> str:
+    """Return a time in s, min, h or days, to two digits.
+
+    Examples
+    --------
+    >>> seconds_text(0.973), seconds_text(600.0)
+    ('0.97 s', '10 min')
+    """
+    for limit, size, unit in ((120.0, 1.0, "s"), (7200.0, 60.0, "min"), (172800.0, 3600.0, "h")):
+        if seconds < limit:
+            return f"{seconds / size:.2g} {unit}"
+    return f"{seconds / 86400.0:.3g} days"

@@ -9,7 +9,7 @@ import numpy.typing as npt
 
 from containment.judgement.case import Case
 from containment.physics.completeness import count_growing
-from containment.physics.edges import Edges, matters
+from containment.physics.edges import Edges, edge_errors, matters
 from containment.physics.floquet import exponents, growing_exponents
 from containment.physics.hill import Half, rows_needed
 
@@ -47,6 +47,8 @@ class OperatingPoint:
         Wavenumbers whose winding number was computed; all others are excluded by a bound.
     farthest_from_integer : float
         Largest distance of a winding number from an integer.
+    lower_error, upper_error : float
+        Estimated relative errors of the edges for the allowance; not-a-number where there is no edge.
     """
 
     frequency: float
@@ -60,6 +62,8 @@ class OperatingPoint:
     proven: bool
     modes_checked: int
     farthest_from_integer: float
+    lower_error: float
+    upper_error: float
 
     @property
     def lower(self) -> float:
@@ -89,12 +93,13 @@ def judged_point(case: Case, *, frequency: float, acceleration: float) -> Operat
     growth = case.allowance.growth
     edges = case.edges(f)
     strict = edges if growth == 0.0 else case.edges(f, growth=0.0)
+    errors = [float(error[0]) for error in edge_errors(case.layer, edges, growth=growth)]
     k, band = _wavenumbers(case, w, acceleration)
     if not len(k):
         return OperatingPoint(
             frequency=frequency, acceleration=acceleration, edges=edges, strict=strict, growth_rate=0.0,
             worst_wavenumber=math.nan, worst_subharmonic=False, growing_modes=0, proven=True, modes_checked=0,
-            farthest_from_integer=0.0,
+            farthest_from_integer=0.0, lower_error=errors[0], upper_error=errors[1],
         )  # fmt: skip
     count = count_growing(case.layer, k, w, acceleration, growth=growth)
     growing = count.growing > 0
@@ -116,7 +121,7 @@ def judged_point(case: Case, *, frequency: float, acceleration: float) -> Operat
         worst_subharmonic=bool(found.subharmonic[worst]),
         growing_modes=int(np.count_nonzero(growing & (band < 0))) + starts,
         proven=bool(count.proven.all()), modes_checked=len(k),
-        farthest_from_integer=float(count.distance.max()),
+        farthest_from_integer=float(count.distance.max()), lower_error=errors[0], upper_error=errors[1],
     )  # fmt: skip
 
 

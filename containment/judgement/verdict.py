@@ -14,7 +14,7 @@ from containment.given.motion import Motion
 from containment.given.quantities import si_value
 from containment.given.vessel import Cylinder, Vessel
 from containment.judgement.case import Allowance, Case, Unshaken, allowance
-from containment.judgement.cautions import machine_cautions, product_cautions, trial_cautions
+from containment.judgement.case_notes import assumptions, averaged_estimate, case_cautions
 from containment.judgement.findings import Answer, Caution, Limit
 from containment.judgement.limits import drive_limits, pull_off_acceleration, pull_off_limit
 from containment.judgement.no_window import why_no_window
@@ -47,6 +47,8 @@ class Verdict:
         Whether the count of growing modes is proven at the drive point (or at the recommended one).
     spans_edge : bool
         Whether the stated uncertainty of the properties reaches across an edge.
+    window : HoldingWindow or None
+        Where the layer would be held: without a drive point, or with one that does not hold.
     """
 
     answer: Answer
@@ -126,6 +128,8 @@ class Verdict:
                 "amplitude_m": point.acceleration / (2.0 * math.pi * point.frequency) ** 2,
                 "lower_acceleration_m_s2": _finite(point.lower),
                 "upper_acceleration_m_s2": _finite(point.upper),
+                "lower_relative_error": _finite(point.lower_error),
+                "upper_relative_error": _finite(point.upper_error),
                 "strict_lower_acceleration_m_s2": _finite(float(point.strict.lower[0])),
                 "strict_upper_acceleration_m_s2": _finite(float(point.strict.upper[0])),
                 "strictly_held": point.strictly_inside,
@@ -320,12 +324,13 @@ def _at_a_point(case: Case, motion: Motion | None, drive: DriveLimits, pressure:
         answer, reason = Answer.HELD, "every mode dies out" if point.strictly_inside else "no mode outgrows the dwell"
     rests = case.unshaken.growth_rate <= case.allowance.growth
     worst = point.worst_wavenumber
+    window = _window(case, drive, pressure) if answer is Answer.NOT_HELD and not rests else None
     return Verdict(
         answer=answer, question="operating point", reason=reason, proven=point.proven, spans_edge=spans,
         liquid=case.liquid, vessel=case.vessel, drive=drive, allowance=case.allowance, margin_factor=factor,
-        unshaken=case.unshaken, holds_unshaken=rests, window=None, strict_window=None, point=point,
-        averaged_estimate=_averaged(case, motion.frequency), limits=tuple(limits),
-        cautions=_cautions(case, motion.frequency, a), assumptions=_assumptions(case, drive),
+        unshaken=case.unshaken, holds_unshaken=rests, window=window, strict_window=None, point=point,
+        averaged_estimate=averaged_estimate(case, motion.frequency), limits=tuple(limits),
+        cautions=case_cautions(case, motion.frequency, a), assumptions=assumptions(case, drive),
         worst_mode=case.spectrum.mode_name(worst) if math.isfinite(worst) else "",
     )  # fmt: skip
 
@@ -337,13 +342,13 @@ def _minimum_drive(case: Case, motion: Motion | None, drive: DriveLimits, pressu
         window = _window(case, drive, pressure)
         strict = window if case.allowance.growth == 0.0 else _window(case, drive, pressure, growth=0.0)
         best = window.recommended
-    point, limits, cautions = None, [], [*_cautions(case, None, None)]
+    point, limits, cautions = None, [], [*case_cautions(case, None, None)]
     proven = True
     if best is not None and not rests:
         checked = judged_point(case, frequency=best.frequency, acceleration=best.acceleration)
         proven = checked.proven and checked.growing_modes == 0
         limits = _limits(case, drive, pressure, best.frequency, best.acceleration)
-        cautions = [*_cautions(case, best.frequency, best.acceleration)]
+        cautions = [*case_cautions(case, best.frequency, best.acceleration)]
     if rests:
         answer, reason = _at_rest(case, factor)
     elif best is None:
@@ -360,8 +365,8 @@ def _minimum_drive(case: Case, motion: Motion | None, drive: DriveLimits, pressu
         answer=answer, question="minimum drive", reason=reason, proven=proven, spans_edge=False,
         liquid=case.liquid, vessel=case.vessel, drive=drive, allowance=case.allowance, margin_factor=factor,
         unshaken=case.unshaken, holds_unshaken=rests, window=window, strict_window=strict, point=point,
-        averaged_estimate=_averaged(case, at), limits=tuple(limits), cautions=tuple(cautions),
-        assumptions=_assumptions(case, drive), worst_mode="",
+        averaged_estimate=averaged_estimate(case, at), limits=tuple(limits), cautions=tuple(cautions),
+        assumptions=assumptions(case, drive), worst_mode="",
     )  # fmt: skip
 
 
@@ -413,78 +418,3 @@ def _spans_edge(case: Case, motion: Motion) -> bool:
         if not edges.lower[0] < motion.acceleration < edges.upper[0]:
             return True
     return False
-
-
-def _averaged(case: Case, frequency: float) -> float:
-    k = case.spectrum.discrete
-    top = case.capillary_wavenumber
-    k = k[k < top]
-    if case.unshaken.growth_rate == 0.0:
-        return 0.0
-    if not len(k):
-        if case.spectrum.continuous_from >= top:
-            return 0.0
-        k = np.geomspace(max(case.spectrum.continuous_from, 1e-3 * top), 0.999 * top, 400)
-    return float(np.max(case.layer.averaged_threshold(k, frequency)))
-
-
-def _cautions(case: Case, frequency: float | None, acceleration: float | None) -> tuple[Caution, ...]:
-    liquid = case.liquid
-    found: list[Caution] = []
-    time = case.unshaken.time_to_spill
-    if time is not None and case.unshaken.growth_rate > case.allowance.growth:
-        found.append(
-            Caution(
-                topic="loss of power",
-                text=f"Without shaking the product falls within about {_shown_time(time)}: a power failure, a stop or a "
-                "trip drops it. Keep people, hands and heads out from below; put a catch tray under it; turn the vessel "
-                "upright before any planned stop.",
-            )
-        )
-    if frequency is not None and acceleration is not None:
-        found.append(
-            Caution(
-                topic="start and stop",
-                text="Bring the shaker to the point while the vessel is upright, then turn it; sweeping through other "
-                "frequencies and levels upside-down leaves the window.",
-            )
-        )
-    found += product_cautions(liquid.hazards, temperature=liquid.temperature, flash_point=liquid.flash_point)
-    if frequency is not None and acceleration is not None:
-        found += machine_cautions(frequency=frequency, acceleration=acceleration)
-    return (*found, *trial_cautions())
-
-
-def _shown_time(seconds: float) -> str:
-    if seconds < 120.0:
-        return f"{seconds:.2g} s"
-    return f"{seconds / 60.0:.2g} min" if seconds < 7200.0 else f"{seconds / 3600.0:.2g} h"
-
-
-def _assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
-    bear = case.allowance
-    lines = [
-        "linear theory: small slopes; a surface already far out of level, or splashed, may fall inside the window",
-        "Newtonian liquid of one temperature, clean surface, no bubbles; rigid vessel moving as a vertical sine, no tilt",
-        "contact line free to slide at 90 degrees; side walls without drag; the small waves that the meniscus sends out "
-        "are left out",
-        f"amplitudes up to {1e3 * case.amplitude_bound:g} mm (zero to peak) are searched",
-        f"unevenness at the start {1e3 * bear.unevenness:.3g} mm",
-    ]
-    if drive.frequency_range is None:
-        lines.append(f"frequencies from {SEARCH_RANGE[0]:g} to {SEARCH_RANGE[1]:g} Hz are searched")
-    if bear.dwell is not None:
-        lines.append(
-            f"upside-down for {bear.dwell:.4g} s: waves may grow {bear.amplification:.3g}-fold in that time, "
-            f"{bear.growth:.3g} 1/s"
-        )
-    if case.spectrum.continuous_from and math.isfinite(case.spectrum.continuous_from):
-        lines.append(
-            f"modes one by one down to a wavelength of {2e3 * math.pi / case.spectrum.continuous_from:.3g} mm; below it "
-            "every wavelength counts"
-        )
-    elif case.vessel.kind == "unbounded":
-        lines.append("no side walls: every wavelength counts")
-    if case.liquid.vapour_pressure is None:
-        lines.append("vapour pressure unknown, taken as 0")
-    return tuple(lines)

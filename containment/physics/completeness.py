@@ -118,5 +118,5 @@ def count_growing(
 def _on_path(
     layer: SlopedLayer, y: Real, k: Real, w: float, acceleration: float, growth: float, rows: int
 ) -> tuple[Complex, Real]:
-    phase, slope = determinant(layer, growth + 1j * y, k, w, acceleration, rows)
+    phase, slope = determinant(layer, np.asarray(growth + 1j * y, np.complex128), k, w, acceleration, rows)
     return phase, np.abs(slope)

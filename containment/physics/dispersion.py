@@ -89,7 +89,7 @@ class Layer:
         """Return A(s; k), m/s^2, for complex s (1/s) and wavenumber k (1/m); the two broadcast."""
         s = np.asarray(s, np.complex128)
         k = np.asarray(wavenumber, np.float64)
-        result = self._impedance(s, k) * s
+        result: Complex = self._impedance(s, k) * s
         result += self.stiffness(k)
         result *= 2.0 / self.density
         return result
@@ -193,10 +193,19 @@ class Layer:
         denominator *= two
         numerator /= denominator
         numerator *= self.viscosity * k
-        return numerator
+        impedance: Complex = numerator
+        return impedance
 
     def _impedance_and_slope(self, s: Complex, k: Real) -> tuple[Complex, Complex]:
         nu = self.viscosity / self.density
+        deep = k * self.depth >= _DEEP_FROM
+        if k.ndim == 1 and s.ndim >= 1 and deep.any() and not deep.all():
+            shape = np.broadcast_shapes(s.shape, k.shape)
+            whole = np.broadcast_to(s, shape)
+            both_of = np.empty((2, *shape), np.complex128)
+            for part in (np.flatnonzero(deep), np.flatnonzero(~deep)):
+                both_of[0][..., part], both_of[1][..., part] = self._impedance_and_slope(whole[..., part], k[part])
+            return both_of[0], both_of[1]
         r = np.sqrt(1.0 + s / (nu * k * k))
         x = (s / (nu * k * k)) / (1.0 + r)
         two = 2.0 + x
@@ -204,7 +213,7 @@ class Layer:
         p1_x = (3.0 * x + 8.0) * x + 8.0
         scale = self.viscosity * k
         by_s = 1.0 / (2.0 * r * nu * k * k)
-        if np.all(k * self.depth >= _DEEP_FROM):
+        if deep.all():
             z = scale * p1 / two
             return z, (scale * p1_x - z) / two * by_s
         kh = k * self.depth

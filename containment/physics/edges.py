@@ -11,17 +11,18 @@ Only modes that can matter are evaluated. A mode is left out where its continued
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from typing import Final, Protocol
+from typing import Final
 
 import numpy as np
 import numpy.typing as npt
 
 from containment.errors import NotComputableError
-from containment.physics.crossings import first_crossing
+from containment.physics.crossings import first_crossing, refined
+from containment.physics.exclusion import BoundedLayer, Floor, matters, not_excluded
 from containment.physics.hill import Half, rows_needed
 from containment.physics.wavenumbers import Spectrum
 
-__all__ = ["AMPLITUDE_BOUND", "BoundedLayer", "Edges", "first_roots", "hold_edges", "matters"]
+__all__ = ["AMPLITUDE_BOUND", "BoundedLayer", "Edges", "edge_errors", "first_roots", "hold_edges", "matters"]
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
@@ -37,28 +38,6 @@ _CHUNK: Final = 6000
 
 _COARSE: Final = 24
 """Wavenumbers that are looked at on each of the two passes for a mode that breaks up early."""
-
-
-class BoundedLayer(Protocol):
-    """What the edges need to know of a layer: see `containment.physics.dispersion.Layer`."""
-
-    density: float
-
-    def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
-        """Return A(s; k)."""
-        ...
-
-    def stiffness(self, wavenumber: npt.ArrayLike) -> Real:
-        """Return the static stiffness."""
-        ...
-
-    def static_impedance(self, wavenumber: npt.ArrayLike) -> Real:
-        """Return Z(0; k)."""
-        ...
-
-    def smallest_coefficient(self, wavenumber: npt.ArrayLike) -> Real:
-        """Return a lower bound of abs(A) over Re s >= 0."""
-        ...
 
 
 @dataclass(frozen=True, slots=True)
@@ -134,26 +113,6 @@ def first_roots(
     return result
 
 
-def matters(layer: BoundedLayer, k: Real, w: Real, acceleration: Real) -> Flags:
-    r"""Return which wavenumbers could have an exponent with Re s >= 0 at an acceleration; the three broadcast.
-
-    False is a proof, for every s = sigma + i y with sigma >= 0. By Floquet shift abs(y) <= w/2. With m the bound of
-    `smallest_coefficient` and zeta = (2/rho) Z0, abs(A_n) >= max(m, zeta abs(s_n)) and abs(s_n) >= abs(n w + y). Hence
-
-        abs(A_0 A_{+-1}) >= min over abs(y) of max(m, zeta abs(y)) zeta (w - abs(y)) = m zeta (w - min(m/zeta, w/2)),
-        abs(A_n A_{n+1}) >= zeta^2 (3/4) w^2 for the other neighbours,
-
-    and Worpitzky's theorem excludes a solution while 4 a^2 is below both. A deep layer has Z0 = 2 mu k and m rising
-    with k, so once k h >= 3 and the test fails to bind, no larger k matters either.
-    """
-    m = layer.smallest_coefficient(k)
-    zeta = 2.0 / layer.density * layer.static_impedance(k)
-    nearest = m * zeta * (w - np.minimum(m / zeta, 0.5 * w))
-    result: Flags = ~(np.minimum(nearest, 0.75 * (zeta * w) ** 2) > 4.0 * acceleration**2)
-    # diagonal dominance needs no pairs
-    return result & ~(m > 2.0 * acceleration)
-
-
 def hold_edges(
     layer: BoundedLayer,
     spectrum: Spectrum,
@@ -203,7 +162,7 @@ def hold_edges(
     if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
         lower[:], lower_wave[:] = np.inf, 0.0  # the acceleration needed grows without bound as k falls
 
-    floor = _Floor.of(layer, k, depth)
+    floor = Floor.of(layer, k, depth)
     upper, upper_wave = nodes.breaks.copy(), nodes.breaks_k.copy()
     upper_sub = np.isfinite(upper)
 
@@ -215,12 +174,12 @@ def hold_edges(
         upper_sub[better] = subharmonic
 
     stop = np.minimum(top, upper[iw])
-    sub = _not_excluded(layer, floor, ik, kk, ww, stop, growth, subharmonic=True)
+    sub = not_excluded(layer, floor, ik, kk, ww, stop, growth, subharmonic=True)
     note(first_roots(layer, kk[sub], ww[sub], growth, stop[sub], subharmonic=True), iw[sub], kk[sub], True)
     stop = np.minimum(top, upper[iw])
     stable = np.flatnonzero(~falls[ik])
     stable = stable[
-        _not_excluded(layer, floor, ik[stable], kk[stable], ww[stable], stop[stable], growth, subharmonic=False)
+        not_excluded(layer, floor, ik[stable], kk[stable], ww[stable], stop[stable], growth, subharmonic=False)
     ]
     note(first_roots(layer, kk[stable], ww[stable], growth, stop[stable], subharmonic=False), iw[stable], kk[stable], False)
     # harmonic waves of the modes that fall at rest: the next root above the one that holds them
@@ -306,75 +265,6 @@ def _nodes_up_to(spectrum: Spectrum, reach: float, slowest: float) -> Real:
     return np.concatenate([spectrum.discrete, start * np.exp(np.arange(count) / _NODES_PER_E_FOLD)])
 
 
-@dataclass(frozen=True, slots=True)
-class _Floor:
-    r"""Proven lower bounds of abs(A(s)) over Re s >= 0, for each wavenumber.
-
-    abs(A) >= zeta abs(s) as in `Layer.smallest_coefficient`. The field of the layer carries at least the kinetic energy
-    of the potential flow of the same surface speed (Kelvin), so Im Z >= y M with M = rho / (k tanh kh), and
-    abs(A) >= (2/rho) abs(s) Im(Z + c/s) >= 2 y^2 / (k tanh kh) - (2/rho) c for stiffness c >= 0 and s = sigma + i y.
-    """
-
-    zeta: Real
-    mobility: Real
-    spring: Real
-
-    @classmethod
-    def of(cls, layer: BoundedLayer, k: Real, depth: float) -> "_Floor":
-        return cls(
-            2.0 / layer.density * layer.static_impedance(k),
-            2.0 / (k * np.tanh(k * depth)),
-            2.0 / layer.density * np.maximum(layer.stiffness(k), 0.0),
-        )
-
-    def at(self, chosen: npt.NDArray[np.intp], y: Real) -> Real:
-        result: Real = np.maximum(self.zeta[chosen] * y, self.mobility[chosen] * y * y - self.spring[chosen])
-        return result
-
-
-def _not_excluded(
-    layer: BoundedLayer,
-    floor: _Floor,
-    ik: npt.NDArray[np.intp],
-    k: Real,
-    w: Real,
-    ceiling: Real,
-    growth: float,
-    *,
-    subharmonic: bool,
-) -> npt.NDArray[np.intp]:
-    """Return the cases where a root below the ceiling is not excluded.
-
-    Let t = 2 a^2 / abs(A_2). While a^2 <= abs(A_n A_{n+1}) / 4 for n >= 2 (Worpitzky), the fraction C = 1 / (A_1 - T)
-    has abs(T) <= t, for this and every smaller a. Hence no root lies below a where
-
-        subharmonic  abs(A_0) - a^2 / (abs(A_1) - t) > a
-        harmonic     2 a^2 max(0, Re A_1 + t) / (abs(A_1) - t)^2 < A_0
-
-    A_2 is first replaced by its proven floor, and evaluated only where that leaves a doubt.
-    """
-    shift = 0.5 if subharmonic else 0.0
-    left = np.arange(len(k))
-    a, a2 = ceiling, ceiling * ceiling
-    for exact in (False, True):
-        here, kl, wl = ik[left], k[left], w[left]
-        first = layer.coefficient(growth + 1j * shift * wl, kl)
-        second = layer.coefficient(growth + 1j * (1.0 + shift) * wl, kl)
-        third = floor.at(here, (2.0 + shift) * wl)
-        if exact:
-            third = np.maximum(third, np.abs(layer.coefficient(growth + 1j * (2.0 + shift) * wl, kl)))
-        fourth, fifth = floor.at(here, (3.0 + shift) * wl), floor.at(here, (4.0 + shift) * wl)
-        t = 2.0 * a2[left] / third
-        gap = np.abs(second) - t
-        if subharmonic:
-            clear = (gap > 0.0) & (np.abs(first) - a2[left] / gap > a[left])
-        else:
-            clear = (gap > 0.0) & (2.0 * a2[left] * np.maximum(0.0, second.real + t) < first.real * gap * gap)
-        clear &= (third * fourth >= 4.0 * a2[left]) & (fourth * fifth >= 4.0 * a2[left])
-        left = left[~clear]
-    return left
-
-
 def _extreme(
     values: Real, at_w: npt.NDArray[np.intp], label: npt.NDArray[np.intp], count: int, pick: np.ufunc
 ) -> tuple[Real, npt.NDArray[np.intp]]:
@@ -429,3 +319,35 @@ def _refined_in_wavenumber(
         -1.0,
     )
     return edges
+
+
+def edge_errors(layer: BoundedLayer, edges: Edges, *, growth: float) -> tuple[Real, Real]:
+    """Return estimates of the relative errors of the lower and the upper edges; not-a-number where there is no edge.
+
+    The binding root is found again with twice the rows, which shows the truncation, and with coefficients that are off
+    by 1e-9, which shows how errors of the coefficients (below 1e-11, see the tests of the impedance) are passed on.
+    """
+    w = 2.0 * np.pi * edges.frequency
+    both = []
+    for value, wave, subharmonic in (
+        (edges.lower, edges.lower_wavenumber, np.zeros(len(w), dtype=bool)),
+        (edges.upper, edges.upper_wavenumber, edges.upper_subharmonic),
+    ):
+        error = np.full(len(w), np.nan)
+        for kind in (False, True):
+            some = np.flatnonzero(np.isfinite(value) & (value > 0.0) & (wave > 0.0) & (subharmonic == kind))
+            if not len(some):
+                continue
+            k, a, ww = wave[some], value[some], w[some]
+            rows = rows_needed(float(np.max(a / (ww * ww) * k)), 1.0)
+            steps = np.arange(2 * rows + 1)[:, None] + (0.5 if kind else 0.0)
+            exact = layer.coefficient(growth + 1j * steps * ww, k)
+            off = exact * (1.0 + 1e-9 * np.exp(1j * np.arange(len(steps)))[:, None])
+            near = np.array([0.999, 1.001])[:, None] * a
+            doubled, disturbed = (
+                refined(half.margin, near[0], near[1], precision=1e-14)
+                for half in (Half.from_coefficients(c, subharmonic=kind) for c in (exact, off))
+            )
+            error[some] = np.abs(doubled / a - 1.0) + 1e-2 * np.abs(disturbed / doubled - 1.0) + 1e-12
+        both.append(error)
+    return both[0], both[1]

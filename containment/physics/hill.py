@@ -6,7 +6,7 @@ With zeta = sum over n of zeta_n exp(s_n t), s_n = sigma + i (n + alpha) w, the 
                                                 A_{-1-n} = conj(A_n)  (alpha = 1/2, subharmonic)
 
 so the two halves of the tridiagonal system are conjugate, and the determinant follows from one half. The tail
-determinants, each row divided by its A_n, obey D_n = D_{n+1} - a^2 / (A_n A_{n+1}) D_{n+2} with D = 1 past the last row;
+determinants, each row divided by its A_n, obey D_n = D_{n+1} - a^2 / (A_n A_{n+1}) D_{n+2}, D = 1 past the last row;
 the continued fraction is C(a) = D_2 / (A_1 D_1). Multiplied by abs(D_1)^2 the two conditions
 
     harmonic  A_0 = 2 a^2 Re C(a),      subharmonic  abs(A_0 - a^2 C(a)) = a

@@ -16,7 +16,7 @@ __all__ = ["Spectrum", "annulus", "box", "cylinder", "slot", "unbounded"]
 Real = npt.NDArray[np.float64]
 
 CYLINDER_DISCRETE_BELOW: Final = 64.0
-"""Up to this k R the modes of a cylinder are taken one by one (537 of them); above, they lie closer than 0.1 % on average."""
+"""Up to this k R the modes of a cylinder are taken one by one (537); above, they lie closer than 0.1 % on average."""
 
 _MOST_DISCRETE: Final = 600
 """Number of modes of a box or an annulus that are taken one by one."""
@@ -123,7 +123,7 @@ def slot(width: float) -> Spectrum:
     314.16
     """
     p = np.arange(1, _SLOT_MOST + 1)
-    return Spectrum(p * (np.pi / width), p, np.zeros_like(p), "slot", (_SLOT_MOST + 0.5) * math.pi / width)
+    return Spectrum(p.astype(np.float64) * (np.pi / width), p, np.zeros_like(p), "slot", (_SLOT_MOST + 0.5) * math.pi / width)
 
 
 def unbounded() -> Spectrum:

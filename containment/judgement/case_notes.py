@@ -1,0 +1,85 @@
+"""What goes with every verdict on a liquid: assumptions, cautions, and the averaged estimate for explanation."""
+
+import math
+
+import numpy as np
+
+from containment.given.drive import DriveLimits
+from containment.judgement.case import Case
+from containment.judgement.cautions import machine_cautions, product_cautions, trial_cautions
+from containment.judgement.findings import Caution, seconds_text
+from containment.judgement.window import SEARCH_RANGE
+
+__all__ = ["assumptions", "averaged_estimate", "case_cautions"]
+
+
+def averaged_estimate(case: Case, frequency: float) -> float:
+    """Return the largest averaged estimate over the modes that fall at rest, m/s^2; 0 where none does."""
+    k = case.spectrum.discrete
+    top = case.capillary_wavenumber
+    k = k[k < top]
+    if case.unshaken.growth_rate == 0.0:
+        return 0.0
+    if not len(k):
+        if case.spectrum.continuous_from >= top:
+            return 0.0
+        k = np.geomspace(max(case.spectrum.continuous_from, 1e-3 * top), 0.999 * top, 400)
+    return float(np.max(case.layer.averaged_threshold(k, frequency)))
+
+
+def case_cautions(case: Case, frequency: float | None, acceleration: float | None) -> tuple[Caution, ...]:
+    """Return the cautions of a case, at a drive point (Hz, peak m/s^2) where one is meant."""
+    liquid = case.liquid
+    found: list[Caution] = []
+    time = case.unshaken.time_to_spill
+    if time is not None and case.unshaken.growth_rate > case.allowance.growth:
+        found.append(
+            Caution(
+                topic="loss of power",
+                text=f"Without shaking the product falls within about {seconds_text(time)}: a power failure, a stop or a "
+                "trip drops it. Keep people, hands and heads out from below; put a catch tray under it; turn the vessel "
+                "upright before any planned stop.",
+            )
+        )
+    if frequency is not None and acceleration is not None:
+        found.append(
+            Caution(
+                topic="start and stop",
+                text="Bring the shaker to the point while the vessel is upright, then turn it; sweeping through other "
+                "frequencies and levels upside-down leaves the window.",
+            )
+        )
+    found += product_cautions(liquid.hazards, temperature=liquid.temperature, flash_point=liquid.flash_point)
+    if frequency is not None and acceleration is not None:
+        found += machine_cautions(frequency=frequency, acceleration=acceleration)
+    return (*found, *trial_cautions())
+
+
+def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
+    """Return what the verdict takes for granted."""
+    bear = case.allowance
+    lines = [
+        "linear theory: small slopes; a surface already far out of level, or splashed, may fall inside the window",
+        "Newtonian liquid of one temperature, clean surface, no bubbles; rigid vessel moving as a vertical sine, no tilt",
+        "contact line free to slide at 90 degrees; side walls without drag; the small waves that the meniscus sends out "
+        "are left out",
+        f"amplitudes up to {1e3 * case.amplitude_bound:g} mm (zero to peak) are searched",
+        f"unevenness at the start {1e3 * bear.unevenness:.3g} mm",
+    ]
+    if drive.frequency_range is None:
+        lines.append(f"frequencies from {SEARCH_RANGE[0]:g} to {SEARCH_RANGE[1]:g} Hz are searched")
+    if bear.dwell is not None:
+        lines.append(
+            f"upside-down for {bear.dwell:.4g} s: waves may grow {bear.amplification:.3g}-fold in that time, "
+            f"{bear.growth:.3g} 1/s"
+        )
+    if case.spectrum.continuous_from and math.isfinite(case.spectrum.continuous_from):
+        lines.append(
+            f"modes one by one down to a wavelength of {2e3 * math.pi / case.spectrum.continuous_from:.3g} mm; below it "
+            "every wavelength counts"
+        )
+    elif case.vessel.kind == "unbounded":
+        lines.append("no side walls: every wavelength counts")
+    if case.liquid.vapour_pressure is None:
+        lines.append("vapour pressure unknown, taken as 0")
+    return tuple(lines)
