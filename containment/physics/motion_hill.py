@@ -79,14 +79,16 @@ class MotionHalf:
         """
         a_n, c = self.coefficients, self.coupling
         width = len(c)
+        column = -c[:, None] * acceleration
+        row = np.conj(c)[:, None] * -acceleration
+        window = _first_window(a_n[-width - 1 :], row, column)
         sizes = np.ones(len(self))
-        window = _first_window(a_n[-width - 1 :], c, acceleration)
         for n in range(len(a_n) - 1, width - 1, -1):
             pivot = window[-1, -1]
-            sizes *= _squared(pivot / a_n[n])
-            core = window[:-1, :-1] - window[:-1, -1:] * (window[-1:, :-1] / pivot)
+            sizes *= _squared(pivot) / _squared(a_n[n])
+            core = _eliminated(window, pivot)
             if n > width:
-                window = _widened(core, a_n[n - width - 1], c, acceleration)
+                window = _widened(core, a_n[n - width - 1], row, column)
         return sizes * self._core_determinant(core, acceleration)
 
     def _core_determinant(self, core: Complex, a: Real) -> Real:
@@ -130,26 +132,31 @@ class MotionHalf:
         return result
 
 
-def _first_window(a_n: Complex, c: Complex, a: Real) -> Complex:
+def _first_window(a_n: Complex, row: Complex, column: Complex) -> Complex:
     """Return the last M + 1 rows and columns of the half system, shape (M + 1, M + 1, cases)."""
     size = len(a_n)
     window = np.zeros((size, size, a_n.shape[1]), np.complex128)
     for i in range(size):
         window[i, i] = a_n[i]
-        for m in range(1, size - i):
-            window[i, i + m] = -a * np.conj(c[m - 1])
-            window[i + m, i] = -a * c[m - 1]
+        window[i, i + 1 :] = row[: size - 1 - i]
+        window[i + 1 :, i] = column[: size - 1 - i]
     return window
 
 
-def _widened(core: Complex, a_n: Complex, c: Complex, a: Real) -> Complex:
+def _eliminated(window: Complex, pivot: Complex) -> Complex:
+    """Eliminate the last row and column."""
+    last = window[-1, :-1] * (1.0 / pivot)
+    return window[:-1, :-1] - window[:-1, -1:] * last
+
+
+def _widened(core: Complex, a_n: Complex, row: Complex, column: Complex) -> Complex:
     """Put the next row and column before the eliminated core."""
     size = len(core) + 1
     window = np.empty((size, size, core.shape[2]), np.complex128)
     window[1:, 1:] = core
     window[0, 0] = a_n
-    window[0, 1:] = -np.conj(c)[:, None] * a
-    window[1:, 0] = -c[:, None] * a
+    window[0, 1:] = row
+    window[1:, 0] = column
     return window
 
 
@@ -197,9 +204,9 @@ def growing_count(
 
     def phase(y: Real) -> Real:
         a_n = layer.coefficient(growth + 1j * (y + n * w), np.full(len(y), k))
-        levels = np.full(len(y), level)
         width = len(coupling)
-        window = _first_window(a_n[-width - 1 :], coupling, levels)
+        column = np.repeat(-coupling[:, None] * level, len(y), axis=1)
+        window = _first_window(a_n[-width - 1 :], np.conj(column), column)
         total = np.zeros(len(y))
         stable = np.angle(a_n + lift).sum(axis=0)
         for i in range(len(a_n) - 1, -1, -1):
@@ -207,8 +214,8 @@ def growing_count(
             total += np.angle(pivot)
             if i == 0:
                 break
-            core = window[:-1, :-1] - window[:-1, -1:] * (window[-1:, :-1] / pivot)
-            window = _widened(core, a_n[i - width - 1], coupling, levels) if i > width else core
+            core = _eliminated(window, pivot)
+            window = _widened(core, a_n[i - width - 1], np.conj(column), column) if i > width else core
         turned: Real = total - stable
         return turned
 
