@@ -16,7 +16,7 @@ import numpy.typing as npt
 from containment.constants import STANDARD_GRAVITY
 from containment.errors import InputError
 from containment.physics.coefficient_bounds import CoefficientBounds
-from containment.physics.surface_matrix import SurfaceMatrix, layer_matrix
+from containment.physics.surface_matrix import SurfaceMatrix, layer_entries, layer_matrix
 
 __all__ = ["COVERED", "FilmedLayer"]
 
@@ -85,7 +85,15 @@ class FilmedLayer:
 
     def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
         """Return A(s; k), m/s^2, for complex s (1/s) and wavenumber k (1/m); the two broadcast."""
-        return self.coefficient_and_slope(s, wavenumber)[0]
+        s = np.asarray(s, np.complex128)
+        k = np.asarray(wavenumber, np.float64)
+        m = layer_entries(s, k, density=self.density, viscosity=self.viscosity, depth=self.depth)
+        value = m.normal
+        if self.film_modulus == 0.0:
+            value = value - m.coupling * m.coupling / m.tangential
+        elif np.isfinite(self.film_modulus):
+            value = value - s * m.coupling * m.coupling / (s * m.tangential + self.film_modulus * k * k)
+        return 2.0 / self.density * (self.stiffness(k) + s * value)
 
     def coefficient_and_slope(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> tuple[Complex, Complex]:
         """Return A(s; k) and dA/ds."""

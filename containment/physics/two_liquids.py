@@ -19,7 +19,7 @@ import numpy.typing as npt
 from containment.constants import STANDARD_GRAVITY
 from containment.errors import InputError
 from containment.physics.coefficient_bounds import CoefficientBounds
-from containment.physics.surface_matrix import layer_matrix
+from containment.physics.surface_matrix import layer_entries, layer_matrix
 
 __all__ = ["TwoLiquids"]
 
@@ -100,7 +100,17 @@ class TwoLiquids:
 
     def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
         """Return A(s; k), m/s^2, for complex s (1/s) and wavenumber k (1/m); the two broadcast."""
-        return self.coefficient_and_slope(s, wavenumber)[0]
+        s = np.asarray(s, np.complex128)
+        k = np.asarray(wavenumber, np.float64)
+        near = layer_entries(
+            s, k, density=self.layer_density, viscosity=self.layer_viscosity, depth=self.layer_depth
+        )
+        far = layer_entries(
+            s, k, density=self.beyond_density, viscosity=self.beyond_viscosity, depth=self.beyond_depth
+        )
+        coupling = near.coupling - far.coupling
+        z = near.normal + far.normal - coupling * coupling / (near.tangential + far.tangential)
+        return 2.0 / self.density * (self.stiffness(k) + s * z)
 
     def coefficient_and_slope(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> tuple[Complex, Complex]:
         """Return A(s; k) and dA/ds."""

@@ -14,7 +14,7 @@ import numpy.typing as npt
 from containment.constants import STANDARD_GRAVITY
 from containment.errors import InputError
 from containment.physics.coefficient_bounds import CoefficientBounds
-from containment.physics.surface_matrix import reduced_root, surface_matrix
+from containment.physics.surface_matrix import reduced_root, surface_entries, surface_matrix
 
 __all__ = ["ComplexViscosity", "ViscoelasticLayer"]
 
@@ -170,7 +170,13 @@ class ViscoelasticLayer:
 
     def coefficient(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> Complex:
         """Return A(s; k), m/s^2, for complex s (1/s) and wavenumber k (1/m); the two broadcast."""
-        return self.coefficient_and_slope(s, wavenumber)[0]
+        s = np.asarray(s, np.complex128)
+        k = np.asarray(wavenumber, np.float64)
+        x = reduced_root(self.density / (k * k) * s * self.liquid.inverse(s)[0])
+        m = surface_entries(x, k * self.depth)
+        z = m.normal - m.coupling * m.coupling / m.tangential
+        at_rest = self.density * self.gravity + self.surface_tension * k * k
+        return 2.0 / self.density * (at_rest + k * self.liquid.product(s)[0] * z)
 
     def coefficient_and_slope(self, s: npt.ArrayLike, wavenumber: npt.ArrayLike) -> tuple[Complex, Complex]:
         """Return A(s; k) and dA/ds."""

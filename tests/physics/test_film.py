@@ -54,6 +54,7 @@ def test_slope_is_the_derivative(liquid, modulus):
     slope = layer.coefficient_and_slope(s, k)[1]
     one, two = ((layer.coefficient(s + h, k) - layer.coefficient(s - h, k)) / (2 * h) for h in (step, 2 * step))
     np.testing.assert_allclose((4 * one - two) / 3, slope, rtol=1e-6)
+    np.testing.assert_allclose(layer.coefficient_and_slope(s, k)[0], layer.coefficient(s, k), rtol=1e-13)
 
 
 @pytest.mark.parametrize("modulus", [0.0, 1e-4, 0.03, 5.0, 1e4, COVERED])

@@ -5,7 +5,7 @@ import numpy as np
 import pytest
 
 from containment.physics.dispersion import Layer
-from containment.physics.surface_matrix import layer_matrix, reduced_root, surface_matrix
+from containment.physics.surface_matrix import layer_matrix, reduced_root, surface_entries, surface_matrix
 
 CASES = [
     (reduced_depth, size, angle)
@@ -45,6 +45,8 @@ def test_entries_and_slopes(reduced_depth, size, angle):
     if abs(x) * reduced_depth > 300.0:
         pytest.skip("beyond the digits of the reference")
     m, slope = surface_matrix(x, reduced_depth)
+    for entry, alone in zip(m, surface_entries(x, reduced_depth), strict=True):
+        assert complex(entry) == complex(alone)
     tolerance = 3e-14 / min(1.0, reduced_depth)
     at = mp.mpc(x) if x else mp.mpf(10) ** -60
     step = mp.mpf(10) ** -30 * max(abs(x), 1e-6)

@@ -127,6 +127,7 @@ def test_slope_and_slow_limit(name):
     step = 1e-4 * np.abs(s)
     one, two = ((liquids.coefficient(s + h, k) - liquids.coefficient(s - h, k)) / (2 * h) for h in (step, 2 * step))
     np.testing.assert_allclose((4 * one - two) / 3, liquids.coefficient_and_slope(s, k)[1], rtol=1e-6)
+    np.testing.assert_allclose(liquids.coefficient_and_slope(s, k)[0], liquids.coefficient(s, k), rtol=1e-13)
     slope = liquids.coefficient_and_slope(0.0, k)[1]
     np.testing.assert_allclose(slope, 2 / liquids.density * liquids.static_impedance(k), rtol=1e-12)
 

@@ -68,6 +68,7 @@ def test_slope_is_the_derivative(name):
     step = 2e-4 * np.abs(s)
     one, two = ((it.coefficient(s + h, k) - it.coefficient(s - h, k)) / (2 * h) for h in (step, 2 * step))
     np.testing.assert_allclose((4 * one - two) / 3, it.coefficient_and_slope(s, k)[1], rtol=1e-6)
+    np.testing.assert_allclose(it.coefficient_and_slope(s, k)[0], it.coefficient(s, k), rtol=1e-13)
 
 
 @pytest.mark.parametrize("name", list(LIQUIDS))
