@@ -18,9 +18,10 @@ SEARCH_RANGE: Final = (2.0, 2000.0)
 """Frequencies that are searched where the drive states no range, Hz."""
 
 _NODES: Final = 49
-_LEVELS: Final = 5
-_PER_LEVEL: Final = 22
-_CORNER_PRECISION: Final = 1e-6
+_LEVELS: Final = 7
+_PER_LEVEL: Final = 10
+_EDGE_PRECISION: Final = 2e-6
+_MARGIN_PRECISION: Final = 1e-3
 _ZOOM: Final = 9
 _ZOOMS: Final = 8
 _SHARPEST_PEAKS: Final = 4
@@ -164,7 +165,7 @@ def search_window(
     Returns
     -------
     HoldingWindow
-        Corners are refined by zooming between nodes to six digits. Where the openness of the window has a peak between
+        Corners are refined by zooming between nodes: edges to 2e-6 in frequency, the point of largest margin to 1e-3. Where the openness of the window has a peak between
         nodes the peak is looked into, so that a narrow window is not overlooked.
     """
     nodes = np.geomspace(*frequency_range, _NODES) if frequencies is None else np.sort(np.asarray(frequencies, float))
@@ -224,14 +225,14 @@ def _corners(
     def narrowest(s: _Sample) -> Real:
         return np.where(s.held, -s.openness, np.inf)
 
-    costs = (least_lower, lowest, narrowest)
+    costs = {least_lower: _EDGE_PRECISION, lowest: _EDGE_PRECISION, narrowest: _MARGIN_PRECISION}
     for _ in range(_LEVELS):  # each level puts new nodes on both sides of the best one of each corner
         f = everything.edges.frequency
         new = []
-        for cost in costs:
+        for cost, precision in costs.items():
             best = int(np.argmin(cost(everything)))
             low, high = f[max(best - 1, 0)], f[min(best + 1, len(f) - 1)]
-            if high > low * (1.0 + _CORNER_PRECISION):
+            if high > low * (1.0 + precision):
                 new.append(np.geomspace(low, high, _PER_LEVEL + 2)[1:-1])
         if not new:
             break

@@ -156,7 +156,11 @@ def hold_edges(
     falls = layer.coefficient(growth, k).real < 0.0
     fall_k = np.flatnonzero(falls)
     lw, lk = np.repeat(np.arange(len(w)), len(fall_k)), np.tile(fall_k, len(w))
-    low = first_roots(layer, k[lk], w[lw], growth, cap[lw], subharmonic=False)
+    # most are found below the ceiling, where fewer harmonics are at work; the rest are sought up to the amplitude bound
+    low = first_roots(layer, k[lk], w[lw], growth, ceiling[lw], subharmonic=False)
+    rest = np.flatnonzero(np.isinf(low) & (ceiling[lw] < cap[lw]))
+    if len(rest):
+        low[rest] = first_roots(layer, k[lk[rest]], w[lw[rest]], growth, cap[lw[rest]], subharmonic=False)
     lower, lower_k = _extreme(low, lw, lk, len(w), np.maximum)
     lower_wave = np.where(lower_k >= 0, k[lower_k], np.nan)
     if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
