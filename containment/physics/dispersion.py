@@ -105,12 +105,12 @@ class Layer:
     def static_impedance(self, wavenumber: npt.ArrayLike) -> Real:
         """Return Z(0; k), Pa s/m: the resistance of the layer to slow motion."""
         k = np.asarray(wavenumber, np.float64)
-        return np.ascontiguousarray(self._impedance(np.zeros(k.shape, np.complex128), k).real)
+        return self._impedance(np.zeros(k.shape, np.complex128), k).real.copy()
 
     def inertia(self, wavenumber: npt.ArrayLike) -> Real:
         """Return dZ/ds at s = 0, kg/m^2: rho times the squared norm of the slow velocity field of unit surface speed."""
         k = np.asarray(wavenumber, np.float64)
-        return np.ascontiguousarray(self._impedance_and_slope(np.zeros(k.shape, np.complex128), k)[1].real)
+        return self._impedance_and_slope(np.zeros(k.shape, np.complex128), k)[1].real.copy()
 
     def smallest_coefficient(self, wavenumber: npt.ArrayLike) -> Real:
         r"""Return a proven lower bound of abs(A(s; k)), m/s^2, over all s with Re s >= 0.
