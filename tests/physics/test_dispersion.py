@@ -116,9 +116,10 @@ def test_deep_layer_closed_form():
     for layer, k, s in sample(60, seed=5):
         with mp.workdps(40):
             nu = mp.mpf(layer.viscosity) / mp.mpf(layer.density)
-            q = mp.sqrt(mp.mpf(k) ** 2 + mp.mpc(s) / nu)
-            f = mp.mpf(layer.density) * k * ((s + 2 * nu * k**2) ** 2 - 4 * nu**2 * mp.mpf(k) ** 3 * q)
-            expected = complex(f / (mp.mpc(s) * mp.mpf(k) ** 2))
+            exact_k, exact_s = mp.mpf(k), mp.mpc(s)
+            q = mp.sqrt(exact_k**2 + exact_s / nu)
+            f = layer.density * exact_k * ((exact_s + 2 * nu * exact_k**2) ** 2 - 4 * nu**2 * exact_k**3 * q)
+            expected = complex(f / (exact_s * exact_k**2))
         for depth in (np.inf, 40.0 / k):
             deep = Layer(density=layer.density, viscosity=layer.viscosity, surface_tension=0.05, depth=depth)
             assert complex(deep.impedance(s, k)) == pytest.approx(expected, rel=1e-10)
