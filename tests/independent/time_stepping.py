@@ -41,8 +41,8 @@ COSINE = ((1, 1.0, 0.0),)
 LARGEST_EXPONENT = 300.0
 """Growth exponents over half a period beyond this overflow."""
 MOST_STEPS = 4000
-STEPS_A_PERIOD = 20
-STEPS_A_RADIAN = 0.6
+STEPS_A_PERIOD = 24
+STEPS_A_RADIAN = 0.75
 """Steps of the five-stage method for each unit of phase, or of growth exponent, of the free surface in a period."""
 
 Components = tuple[tuple[int, float, float], ...]
