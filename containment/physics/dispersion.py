@@ -112,6 +112,12 @@ class Layer:
         k = np.asarray(wavenumber, np.float64)
         return self._impedance_and_slope(np.zeros(k.shape, np.complex128), k)[1].real.copy()
 
+    def added_mass(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return rho / (k tanh kh), kg/m^2: the inertia that every motion of the surface carries at least (Kelvin)."""
+        k = np.asarray(wavenumber, np.float64)
+        result: Real = self.density / (k * np.tanh(k * self.depth))
+        return result
+
     def smallest_coefficient(self, wavenumber: npt.ArrayLike) -> Real:
         r"""Return a proven lower bound of abs(A(s; k)), m/s^2, over all s with Re s >= 0.
 
@@ -120,12 +126,13 @@ class Layer:
         1. The power that drives the surface is dissipated or stored: for unit surface speed, with v the velocity field,
            Z = integral of (s rho abs(v)^2 + 2 mu abs(e)^2). No field of unit surface speed dissipates less than the slow
            one (Helmholtz), so Re Z(s) >= Z0 = Z(0), hence abs(c + s Z) = abs(s) abs(Z + c/s) >= abs(s) Z0.
-        2. The difference d of the field at s and the slow field v0 obeys the homogeneous conditions with the body force
-           -s rho v0; tested with conj(s) d it gives norm(d) <= norm(v0), so norm(v) <= 2 norm(v0). By reciprocity
-           Z(s) - Z0 = s rho (v, v0), hence abs(Z) <= Z0 + 2 abs(s) Z1 with Z1 = Z'(0) = rho norm(v0)^2, and
-           abs(c + s Z) >= c - abs(s) Z0 - 2 abs(s)^2 Z1.
+        2. By reciprocity Z(s) - Z0 = s rho (v, v0), v0 the slow field. In the decaying fields of the layer with its
+           surface at rest (rates l_j > 0) v - v0 = -sum of s/(s + l_j) (v0, f_j) f_j, so (v, v0) is the part of
+           norm(v0)^2 outside their span plus the sum of l_j/(s + l_j) abs((v0, f_j))^2, and abs((v, v0)) <= norm(v0)^2.
+           Hence abs(Z) <= Z0 + abs(s) Z1 with Z1 = Z'(0) = rho norm(v0)^2, and abs(c + s Z) >= c - abs(s) Z0 -
+           abs(s)^2 Z1.
 
-        The first grows and the second falls with abs(s); they cross at 2 Z1 x^2 + 2 Z0 x = c, and
+        The first grows and the second falls with abs(s); they cross at Z1 x^2 + 2 Z0 x = c, and
         abs(A) >= (2/rho) Z0 x for every s.
 
         A mode with smallest_coefficient > 2 a cannot grow at peak acceleration a, whatever the frequency: its rows
@@ -134,7 +141,7 @@ class Layer:
         k = np.asarray(wavenumber, np.float64)
         c = np.maximum(self.stiffness(k), 0.0)
         z0, z1 = self.static_impedance(k), self.inertia(k)
-        x = c / (z0 + np.sqrt(z0 * z0 + 2.0 * z1 * c))
+        x = c / (z0 + np.sqrt(z0 * z0 + z1 * c))
         result: Real = 2.0 / self.density * z0 * x
         return result
 

@@ -166,7 +166,7 @@ def hold_edges(
     if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
         lower[:], lower_wave[:] = np.inf, 0.0  # the acceleration needed grows without bound as k falls
 
-    floor = Floor.of(layer, k, depth)
+    floor = Floor.of(layer, k)
     upper, upper_wave = nodes.breaks.copy(), nodes.breaks_k.copy()
     upper_sub = np.isfinite(upper)
 

@@ -33,6 +33,10 @@ class BoundedLayer(Protocol):
         """Return Z(0; k)."""
         ...
 
+    def added_mass(self, wavenumber: npt.ArrayLike) -> Real:
+        """Return a proven floor of Im Z / Im s, 0 where there is none."""
+        ...
+
     def smallest_coefficient(self, wavenumber: npt.ArrayLike) -> Real:
         """Return a lower bound of abs(A) over Re s >= 0."""
         ...
@@ -52,7 +56,8 @@ def matters(layer: BoundedLayer, k: Real, w: Real, acceleration: Real) -> Flags:
     """
     m = layer.smallest_coefficient(k)
     zeta = 2.0 / layer.density * layer.static_impedance(k)
-    nearest = m * zeta * (w - np.minimum(m / zeta, 0.5 * w))
+    turn = np.divide(m, zeta, out=np.zeros(np.broadcast_shapes(m.shape, zeta.shape)), where=zeta > 0.0)
+    nearest = m * zeta * (w - np.minimum(turn, 0.5 * w))
     result: Flags = ~(np.minimum(nearest, 0.75 * (zeta * w) ** 2) > 4.0 * acceleration**2)
     # diagonal dominance needs no pairs
     return result & ~(m > 2.0 * acceleration)
@@ -72,11 +77,11 @@ class Floor:
     spring: Real
 
     @classmethod
-    def of(cls, layer: BoundedLayer, k: Real, depth: float) -> Self:
+    def of(cls, layer: BoundedLayer, k: Real) -> Self:
         """Take the bounds of a layer at wavenumbers k."""
         return cls(
             2.0 / layer.density * layer.static_impedance(k),
-            2.0 / (k * np.tanh(k * depth)),
+            2.0 / layer.density * layer.added_mass(k),
             2.0 / layer.density * np.maximum(layer.stiffness(k), 0.0),
         )
 

@@ -12,24 +12,19 @@ eliminated pivots. For M = 1 this is the continued fraction of `Half`, and the r
 """
 
 from dataclasses import dataclass
-from typing import Final, Self
+from typing import Self
 
 import numpy as np
 import numpy.typing as npt
 
-from containment.errors import NotComputableError
 from containment.physics.hill import LayerModel, rows_needed
+from containment.physics.winding import exponents_beyond, largest_rate
 
 __all__ = ["MotionHalf", "fastest_growth", "growing_count", "motion_rows"]
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
 Chosen = npt.NDArray[np.bool_] | npt.NDArray[np.intp]
-
-_LARGEST_TURN: Final = 0.6
-"""Largest turn of the determinant between two nodes of its path, rad."""
-_MOST_HALVINGS: Final = 30
-_INTEGER_TOLERANCE: Final = 0.05
 
 
 def motion_rows(coupling: Complex, amplitude: float, wavenumber: float) -> int:
@@ -49,6 +44,22 @@ class MotionHalf:
         c_m, see `containment.physics.motions.Waveform.coupling`.
     subharmonic : bool
         Which of the two systems it is.
+
+    Examples
+    --------
+    The acceleration (of the fundamental) above which a crank with rod ratio 0.25 holds one mode, against a pure sine:
+
+    >>> from containment.physics.crossings import first_crossing
+    >>> from containment.physics.dispersion import Layer
+    >>> from containment.physics.motions import PURE_SINE, crank_and_rod
+    >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
+    >>> k, w = np.array([60.0]), np.array([314.16])
+    >>> for motion in (PURE_SINE, crank_and_rod(rod_ratio=0.25)):
+    ...     half = MotionHalf.of(layer, k, w, 0.0, 16, motion.coupling(), subharmonic=False)
+    ...     root = first_crossing(half, half.root_free_below(), np.array([600.0]), turns=np.sqrt(k) / w)
+    ...     print(round(float(root[0]), 1))
+    194.9
+    191.3
     """
 
     coefficients: Complex
@@ -79,8 +90,8 @@ class MotionHalf:
         """
         a_n, c = self.coefficients, self.coupling
         width = len(c)
-        column = -c[:, None] * acceleration
-        row = np.conj(c)[:, None] * -acceleration
+        column: Complex = -acceleration.astype(np.complex128) * c[:, None]
+        row = np.conj(column)
         window = _first_window(a_n[-width - 1 :], row, column)
         sizes = np.ones(len(self))
         for n in range(len(a_n) - 1, width - 1, -1):
@@ -195,7 +206,15 @@ def growing_count(
     -----
     As in `containment.physics.completeness`: along s = growth + i y, y from 0 to w/2, the determinant of the two-sided
     system divided by the coefficients of a layer that is stable at rest turns by -pi for every exponent to the right.
-    The path is halved until no piece turns by more than 0.6 rad, and once more to confirm the total.
+
+    Examples
+    --------
+    >>> from containment.physics.dispersion import Layer
+    >>> from containment.physics.motions import crank_and_rod
+    >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
+    >>> motion = crank_and_rod(rod_ratio=0.25).coupling()
+    >>> [growing_count(layer, 60.0, 314.16, level, motion)[0] for level in (100.0, 250.0)]
+    [1, 0]
     """
     if rows is None:
         rows = motion_rows(coupling, level / (w * w), k)
@@ -219,24 +238,7 @@ def growing_count(
         turned: Real = total - stable
         return turned
 
-    y = 0.5 * w * (1.0 - np.cos(np.linspace(0.0, np.pi, 13))) / 2.0
-    value = phase(y)
-    confirmed = None
-    for _ in range(_MOST_HALVINGS):
-        turns = np.mod(np.diff(value) + np.pi, 2.0 * np.pi) - np.pi
-        wide = np.flatnonzero(np.abs(turns) > _LARGEST_TURN)
-        if not len(wide):
-            winding = -float(turns.sum()) / np.pi
-            if confirmed is not None and abs(winding - confirmed) < 1e-6:
-                break
-            confirmed = winding
-            wide = np.arange(len(turns))
-        middle = 0.5 * (y[wide] + y[wide + 1])
-        y, value = np.insert(y, wide + 1, middle), np.insert(value, wide + 1, phase(middle))
-    else:
-        return 0, 0.5
-    count = round(winding)
-    return count, abs(winding - count)
+    return exponents_beyond(phase, w)
 
 
 def fastest_growth(
@@ -255,24 +257,18 @@ def fastest_growth(
     ------
     NotComputableError
         A winding number is not an integer: an exponent lies on the path, or the truncation is too coarse.
-    """
-    def grows(rate: float) -> bool:
-        count, distance = growing_count(layer, k, w, level, coupling, growth=rate)
-        if distance > _INTEGER_TOLERANCE:
-            raise NotComputableError(
-                f"growth of the mode {k:.6g} 1/m: the count of exponents beyond {rate:.6g} 1/s is off by {distance:.2g}"
-            )
-        return count > 0
 
-    if not grows(0.0):
-        return 0.0
-    low, high = 0.0, 0.01 * w
-    while grows(high):
-        low, high = high, 4.0 * high
-    while high - low > precision * w:
-        middle = 0.5 * (low + high)
-        low, high = (middle, high) if grows(middle) else (low, middle)
-    return 0.5 * (low + high)
+    Examples
+    --------
+    >>> from containment.physics.dispersion import Layer
+    >>> from containment.physics.motions import PURE_SINE
+    >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
+    >>> round(fastest_growth(layer, 60.0, 314.16, 0.01, PURE_SINE.coupling()), 3)  # hardly shaken: the layer falls
+    5.969
+    """
+    return largest_rate(
+        lambda rate: growing_count(layer, k, w, level, coupling, growth=rate), w, precision=precision
+    )
 
 
 def _squared(z: Complex) -> Real:

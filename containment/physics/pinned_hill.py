@@ -34,7 +34,7 @@ import numpy.typing as npt
 
 from containment.physics.hill import LayerModel
 
-__all__ = ["PinnedHalf", "harmonics_at_work", "reach_factors"]
+__all__ = ["PinnedHalf", "harmonics_at_work", "reach_factors", "summed_inverse"]
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
@@ -133,39 +133,13 @@ class PinnedHalf:
         ratio[rows] = a / A[rows]
         for n in range(rows - 1, 0, -1):
             np.divide(a, A[n] - a * ratio[n + 1], out=ratio[n])
-        block = self._outer_block(a, A, ratio)
+        block = summed_inverse(a, A[1:], ratio[1:], self.heights)
         descent = np.empty((rows + 1, *A.shape[1:]), np.complex128)  # h_n, with h_0 = 1
         descent[0] = 1.0
         np.cumprod(ratio[1:], axis=0, out=descent[1:])
         if self.subharmonic:
             return self._subharmonic(a, A[0] - a * ratio[1], descent, block)
         return self._harmonic(A[0].real - 2.0 * a * ratio[1].real, A[0].real, descent, block)
-
-    def _outer_block(self, a: Real, A: Complex, ratio: Complex) -> Complex:  # noqa: N803
-        """Return P, shape (cases, N, rims, N, rims): sum over modes of b b^T times the inverse of the rows n >= 1."""
-        rows = len(A) - 1
-        cases, rims, _ = self.heights.shape
-        forward = A[1]
-        cells = np.empty_like(A[1:])
-        for n in range(1, rows + 1):
-            if n > 1:
-                forward = A[n] - a * a / forward
-            # A_n - a^2/eps_{n+1} is a / ratio_n
-            cells[n - 1] = 1.0 / (a / ratio[n] + forward - A[n])
-        result = np.zeros((cases, rows, rims, rows, rims), np.complex128)
-        index = np.arange(rows)
-        for one in range(rims):
-            for other in range(one + 1):
-                part = cells * (self.heights[:, one] * self.heights[:, other])
-                for offset in range(rows):
-                    if offset:
-                        part = part[:-1] * ratio[1 + offset :]
-                    value = np.add.reduce(part, axis=-1)
-                    low, high = index[: rows - offset], index[offset:]
-                    for row, column in ((low, high), (high, low)):
-                        result[:, row, one, column, other] = value.T
-                        result[:, row, other, column, one] = value.T
-        return result
 
     def _harmonic(self, g: Real, g0: Real, descent: Complex, block: Complex) -> tuple[Real, Whole]:
         cases, rims, modes = self.heights.shape
@@ -202,6 +176,49 @@ class PinnedHalf:
         first = self.coefficients[0]
         logs = np.sum(np.log(np.abs(d) / (first.real**2 + first.imag**2)), axis=1)
         return _inertia(matrix, np.concatenate([scale, scale], axis=1), logs, np.sum(d > 0.0, axis=1) - size - rims)
+
+
+def summed_inverse(a: Real, A: Complex, ratio: Complex, heights: Real) -> Complex:  # noqa: N803
+    """Return the sum over the modes of b b^T times the inverse of a tridiagonal system.
+
+    Parameters
+    ----------
+    a : array, shape (cases, 1)
+        Acceleration; the couplings are -a.
+    A : array of complex, shape (rows, cases, modes)
+        Diagonals.
+    ratio : array of complex, shape (rows, cases, modes)
+        a / (A_n - a^2 / (A_{n+1} - ...)).
+    heights : array, shape (cases, rims, modes)
+        b.
+
+    Returns
+    -------
+    array of complex, shape (cases, rows, rims, rows, rims)
+    """
+    rows = len(A)
+    cases, rims, _ = heights.shape
+    cells = np.empty_like(A)
+    forward = A[0]
+    for n in range(rows):
+        if n:
+            forward = A[n] - a * a / forward
+        # a / ratio_n is the pivot from the other side
+        cells[n] = 1.0 / (a / ratio[n] + forward - A[n])
+    result = np.zeros((cases, rows, rims, rows, rims), np.complex128)
+    index = np.arange(rows)
+    for one in range(rims):
+        for other in range(one + 1):
+            part = cells * (heights[:, one] * heights[:, other])
+            for offset in range(rows):
+                if offset:
+                    part = part[:-1] * ratio[offset:]
+                value = np.add.reduce(part, axis=-1).T
+                low, high = index[: rows - offset], index[offset:]
+                for row, column in ((low, high), (high, low)):
+                    result[:, row, one, column, other] = value
+                    result[:, row, other, column, one] = value
+    return result
 
 
 def harmonics_at_work(acceleration: Real, reach: Real) -> Real:
