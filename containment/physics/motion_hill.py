@@ -18,7 +18,7 @@ import numpy as np
 import numpy.typing as npt
 
 from containment.physics.hill import LayerModel, rows_needed
-from containment.physics.winding import exponents_beyond, largest_rate
+from containment.physics.winding import damping_for, exponents_beyond, largest_rate
 
 __all__ = ["MotionHalf", "fastest_growth", "growing_count", "motion_rows"]
 
@@ -204,8 +204,8 @@ def growing_count(
 
     Notes
     -----
-    As in `containment.physics.completeness`: along s = growth + i y, y from 0 to w/2, the determinant of the two-sided
-    system divided by the coefficients of a layer that is stable at rest turns by -pi for every exponent to the right.
+    See `containment.physics.winding`; the rows run from -N to N.
+
 
     Examples
     --------
@@ -219,26 +219,28 @@ def growing_count(
     if rows is None:
         rows = motion_rows(coupling, level / (w * w), k)
     n = np.arange(-rows, rows + 1)[:, None]
-    lift = max(0.0, -2.0 * float(layer.coefficient(0.0, k).real))
+    rest = float(layer.coefficient(0.0, k).real)
+    lift = max(0.0, -2.0 * rest)
+    damping = float(damping_for(np.array(rest + lift), np.array(k), w))
 
-    def phase(y: Real) -> Real:
-        a_n = layer.coefficient(growth + 1j * (y + n * w), np.full(len(y), k))
+    def track(y: Real) -> tuple[Complex, Real]:
+        s = growth + 1j * (y + n * w)
+        a_n = layer.coefficient(s, np.full(len(y), k))
         width = len(coupling)
         column = np.repeat(-coupling[:, None] * level, len(y), axis=1)
         window = _first_window(a_n[-width - 1 :], np.conj(column), column)
-        total = np.zeros(len(y))
-        stable = np.angle(a_n + lift).sum(axis=0)
+        total = np.zeros(len(y), np.complex128)
+        damped = a_n + lift + damping * s
         for i in range(len(a_n) - 1, -1, -1):
             pivot = window[-1, -1]
-            total += np.angle(pivot)
+            total += np.log(pivot / damped[i])
             if i == 0:
                 break
             core = _eliminated(window, pivot)
             window = _widened(core, a_n[i - width - 1], np.conj(column), column) if i > width else core
-        turned: Real = total - stable
-        return turned
+        return total, (np.angle(damped) - np.angle(a_n + lift)).sum(axis=0)
 
-    return exponents_beyond(phase, w)
+    return exponents_beyond(track, w)
 
 
 def fastest_growth(
