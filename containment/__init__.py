@@ -17,6 +17,7 @@ _PUBLIC: Final = {
     "Unbounded": "containment.given.vessel",
     "Motion": "containment.given.motion",
     "DriveLimits": "containment.given.drive",
+    "Surroundings": "containment.given.surroundings",
     "Verdict": "containment.judgement.verdict",
     "assess": "containment.judgement.verdict",
     "holding_window": "containment.judgement.verdict",
@@ -30,6 +31,7 @@ if TYPE_CHECKING:
     from containment.given.drive import DriveLimits
     from containment.given.liquid import Liquid, liquid
     from containment.given.motion import Motion
+    from containment.given.surroundings import Surroundings
     from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded
     from containment.judgement.verdict import Verdict, assess, holding_window
     from containment.judgement.window import HoldingWindow

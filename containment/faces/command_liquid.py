@@ -4,6 +4,7 @@ import argparse
 
 from containment.faces import options as shared
 from containment.given.liquid import Liquid
+from containment.given.surroundings import Surroundings
 
 __all__ = ["add_arguments", "add_liquid", "liquid_from", "run"]
 
@@ -26,7 +27,45 @@ def add_process(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--unevenness", metavar="X", help="of the surface at the start; default 0.1mm or depth/100")
     group.add_argument("--amplification", metavar="B", help="factor by which it may grow in the dwell")
     group.add_argument("--margin", metavar="FACTOR", help="factor to either edge below which it is marginal; 1.25")
+
+
+def add_surroundings(parser: argparse.ArgumentParser) -> None:
+    """Add what surrounds the layer."""
+    group = parser.add_argument_group("surroundings")
+    group.add_argument("--surface", choices=("clean", "covered"), help="free surface clean, or under a skin")
+    group.add_argument("--film-modulus", metavar="E", help="of a surface film in between, such as 20mN/m")
+    group.add_argument("--cushion", metavar="GAP", help="height of trapped gas on which the layer floats")
+    group.add_argument("--polytropic-exponent", metavar="N", help="of that gas; default 1.4")
+    group.add_argument("--below", metavar="NAME", help="a lighter liquid under the layer, down to a lid")
+    group.add_argument("--below-depth", metavar="DEPTH", help="its depth")
+    group.add_argument("--interfacial-tension", metavar="GAMMA", help="between the two liquids")
+    group.add_argument("--tilt", metavar="ANGLE", help="of the vessel, such as 1deg")
     group.add_argument("--ambient-pressure", metavar="P", help="absolute; default 101.325kPa")
+
+
+def surroundings_from(options: argparse.Namespace) -> Surroundings:
+    """Return the surroundings that the options describe."""
+    from containment.given.liquid import liquid
+    from containment.given.surroundings import Surroundings
+
+    below = None
+    if options.below is not None:
+        temperature = shared.quantity(options, "temperature", "temperature", above=0.0, most=5000.0)
+        below = liquid(options.below, temperature=temperature, tables=options.table or ())
+    values = {
+        name: shared.quantity(options, name, kind)
+        for name, kind in (
+            ("film_modulus", "elastic modulus of a film"),
+            ("cushion", "length"),
+            ("polytropic_exponent", "ratio"),
+            ("below_depth", "length"),
+            ("interfacial_tension", "surface tension"),
+            ("tilt", "angle"),
+            ("ambient_pressure", "pressure"),
+        )
+    }
+    given = {name: value for name, value in values.items() if value is not None}
+    return Surroundings(surface=options.surface, below=below, **given)
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
@@ -36,6 +75,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     shared.add_drive_point(parser)
     shared.add_drive_limits(parser)
     add_process(parser)
+    add_surroundings(parser)
     shared.add_output(parser)
 
 
@@ -61,7 +101,6 @@ def liquid_from(options: argparse.Namespace) -> Liquid:
 
 def run(options: argparse.Namespace) -> int:
     """Judge the case and print the verdict; return the exit status."""
-    from containment.constants import STANDARD_ATMOSPHERE
     from containment.judgement.findings import exit_status
     from containment.judgement.verdict import MARGIN_FACTOR, assess
 
@@ -69,7 +108,6 @@ def run(options: argparse.Namespace) -> int:
     motion = shared.motion_from(options)
     drive = shared.drive_from(options)
     factor = shared.quantity(options, "margin", "ratio", least=1.0, most=100.0)
-    pressure = shared.quantity(options, "ambient_pressure", "pressure", above=0.0, most=1e8)
     verdict = assess(
         liquid_from(options),
         vessel,
@@ -78,7 +116,7 @@ def run(options: argparse.Namespace) -> int:
         unevenness=shared.quantity(options, "unevenness", "length", above=0.0),
         amplification=shared.quantity(options, "amplification", "ratio", above=1.0, most=1e6),
         drive=drive,
-        ambient_pressure=STANDARD_ATMOSPHERE if pressure is None else pressure,
+        surroundings=surroundings_from(options),
         margin_factor=MARGIN_FACTOR if factor is None else factor,
     )
     if options.json:

@@ -12,11 +12,12 @@ from containment.constants import STANDARD_GRAVITY
 from containment.errors import InputError
 from containment.given.liquid import Liquid
 from containment.given.quantities import si_value
+from containment.given.surroundings import Surroundings
 from containment.given.vessel import Annulus, Box, Cylinder, Slot, Vessel
 from containment.physics import wavenumbers
-from containment.physics.dispersion import Layer
-from containment.physics.edges import AMPLITUDE_BOUND, Edges, hold_edges
+from containment.physics.edges import AMPLITUDE_BOUND, Edges, first_roots, hold_edges
 from containment.physics.floquet import static_growth_rate
+from containment.physics.layers import LayerModel, layer_model
 
 __all__ = ["Allowance", "Case", "Unshaken", "allowance", "spectrum_of"]
 
@@ -26,6 +27,7 @@ _UNEVENNESS: Final = 1e-4
 """Assumed initial unevenness of the surface, m, where none is given (common practice: a tenth of a millimetre)."""
 _UNEVENNESS_OF_DEPTH: Final = 0.01
 _BEARABLE_OF_DEPTH: Final = 0.1
+_CUSHION_DAMPING: Final = 0.1
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -119,17 +121,28 @@ class Case:
     liquid: Liquid
     vessel: Vessel
     allowance: Allowance
+    surroundings: Surroundings = Surroundings()
     amplitude_bound: float = AMPLITUDE_BOUND
 
     @cached_property
-    def layer(self) -> Layer:
+    def layer(self) -> LayerModel:
         """The layer, for the physics."""
-        return Layer(
-            density=self.liquid.density,
-            viscosity=self.liquid.viscosity,
-            surface_tension=self.liquid.surface_tension,
-            depth=self.vessel.depth,
-        )
+        return self.layer_with()
+
+    def layer_with(self, *, surface: str | None = None, gravity: float = -STANDARD_GRAVITY) -> LayerModel:
+        """Return the layer with another state of its surface, or upright with positive gravity."""
+        around = self.surroundings
+        film = around.film_modulus
+        if (surface or around.surface) == "covered":
+            film = math.inf
+        elif surface == "clean":
+            film = None
+        below = around.below
+        return layer_model(
+            density=self.liquid.density, viscosity=self.liquid.viscosity, depth=self.vessel.depth, gravity=gravity,
+            tension=self.liquid.surface_tension if below is None else around.interfacial_tension,
+            film_modulus=film, below=None if below is None else (below.density, below.viscosity, around.below_depth),
+        )  # fmt: skip
 
     @cached_property
     def spectrum(self) -> wavenumbers.Spectrum:
@@ -138,10 +151,11 @@ class Case:
 
     @property
     def capillary_wavenumber(self) -> float:
-        """1 / l_c, 1/m; infinite without surface tension."""
-        if self.liquid.surface_tension == 0.0:
-            return math.inf
-        return math.sqrt(self.liquid.density * STANDARD_GRAVITY / self.liquid.surface_tension)
+        """1 / l_c, 1/m: wavelengths shorter than 2 pi l_c stand at rest; infinite without surface tension."""
+        around = self.surroundings
+        tension = self.liquid.surface_tension if around.below is None else around.interfacial_tension
+        density = self.liquid.density - (around.below.density if around.below else 0.0)
+        return math.inf if tension == 0.0 else math.sqrt(max(density, 0.0) * STANDARD_GRAVITY / tension)
 
     @property
     def product_mass(self) -> float | None:
@@ -149,14 +163,30 @@ class Case:
         area = self.vessel.area
         return None if area is None else area * self.vessel.depth * self.liquid.density
 
-    def edges(self, frequency: npt.ArrayLike, *, growth: float | None = None) -> Edges:
-        """Return the edges of the window at given frequencies (Hz), for the allowance or another growth rate."""
+    def edges(
+        self, frequency: npt.ArrayLike, *, growth: float | None = None, layer: LayerModel | None = None
+    ) -> Edges:
+        """Return the edges of the window at given frequencies (Hz), for the allowance or another growth rate or layer."""
         if self.liquid.surface_tension == 0.0:
             raise InputError(
                 "surface tension: 0 N/m is not allowed here; without it every short wave falls and no finite drive holds"
             )
+        edges = self._layer_edges(layer or self.layer, frequency, growth)
+        if self.surroundings.cushion is None:
+            return edges
+        # a layer on gas has a second surface, facing up, on which the same motion raises ordinary waves
+        other = self._layer_edges(self.layer_with(gravity=STANDARD_GRAVITY), frequency, growth)
+        low, high = self.gain(edges.frequency)
+        first = other.upper < edges.upper
+        return Edges(
+            edges.frequency, edges.lower / low, np.minimum(edges.upper, other.upper) / high, edges.lower_wavenumber,
+            np.where(first, other.upper_wavenumber, edges.upper_wavenumber),
+            np.where(first, other.upper_subharmonic, edges.upper_subharmonic),
+        )  # fmt: skip
+
+    def _layer_edges(self, layer: LayerModel, frequency: npt.ArrayLike, growth: float | None) -> Edges:
         return hold_edges(
-            self.layer,
+            layer,
             self.spectrum,
             frequency,
             growth=self.allowance.growth if growth is None else growth,
@@ -164,6 +194,49 @@ class Case:
             capillary_wavenumber=self.capillary_wavenumber,
             depth=self.vessel.depth,
         )
+
+    def lower_edge(self, frequency: float, *, layer: LayerModel) -> float:
+        """Return the lower edge alone at one frequency (Hz), for another layer, m/s^2."""
+        top = self.capillary_wavenumber
+        k = self.spectrum.discrete
+        k = k[k < top]
+        start = self.spectrum.continuous_from
+        if start < top:
+            k = np.concatenate([k, np.geomspace(start, top, 100)])
+        return float(self.lower_roots(frequency, k, layer=layer).max(initial=0.0))
+
+    def lower_roots(self, frequency: float, wavenumber: Real, *, layer: LayerModel | None = None) -> Real:
+        """Return from which acceleration of the layer on each wavenumber is held, m/s^2; 0 for those that stand at rest."""
+        model = layer or self.layer
+        w = np.full(len(wavenumber), 2.0 * math.pi * frequency)
+        falls = np.flatnonzero(model.coefficient(self.allowance.growth, wavenumber).real < 0.0)
+        result = np.zeros(len(wavenumber))
+        result[falls] = first_roots(
+            model, wavenumber[falls], w[falls], self.allowance.growth, self.amplitude_bound * w[falls] ** 2,
+            subharmonic=False,
+        )  # fmt: skip
+        return result
+
+    def gain(self, frequency: npt.ArrayLike) -> tuple[Real, Real]:
+        """Return how much more the layer moves than the vessel, taken low and taken high; 1 without a cushion.
+
+        A layer on trapped gas moves with the gas as a spring. Taken high: no damping. Taken low: a tenth of critical
+        damping (common practice where none was measured), so that near resonance neither edge is flattered.
+        """
+        f = np.asarray(frequency, dtype=np.float64)
+        around = self.surroundings
+        if around.cushion is None:
+            return np.ones(f.shape), np.ones(f.shape)
+        from containment.physics.gas_cushion import compressed_gap, cushion_pressure, cushion_resonance, motion_ratio
+
+        load = {"ambient_pressure": around.ambient_pressure, "density": self.liquid.density, "depth": self.vessel.depth}
+        resonance = cushion_resonance(
+            pressure=cushion_pressure(**load), density=self.liquid.density, depth=self.vessel.depth,
+            gap=compressed_gap(around.cushion, **load), exponent=around.polytropic_exponent,
+        )  # fmt: skip
+        low = motion_ratio(f, resonance=resonance, damping_ratio=_CUSHION_DAMPING)
+        high = motion_ratio(f, resonance=resonance)
+        return np.minimum(low, high), np.minimum(np.maximum(low, high), 1e6)
 
     @cached_property
     def unshaken(self) -> Unshaken:

@@ -7,6 +7,7 @@ import numpy as np
 from containment.given.drive import DriveLimits
 from containment.judgement.case import Case
 from containment.judgement.cautions import machine_cautions, product_cautions, trial_cautions
+from containment.judgement.companions import gas_caution
 from containment.judgement.findings import Caution, seconds_text
 from containment.judgement.window import SEARCH_RANGE
 
@@ -49,6 +50,7 @@ def case_cautions(case: Case, frequency: float | None, acceleration: float | Non
                 "frequencies and levels upside-down leaves the window.",
             )
         )
+        found.append(gas_caution(case, frequency))
     found += product_cautions(liquid.hazards, temperature=liquid.temperature, flash_point=liquid.flash_point)
     if frequency is not None and acceleration is not None:
         found += machine_cautions(frequency=frequency, acceleration=acceleration)
@@ -60,9 +62,9 @@ def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
     bear = case.allowance
     lines = [
         "linear theory: small slopes; a surface already far out of level, or splashed, may fall inside the window",
-        "Newtonian liquid of one temperature, clean surface, no bubbles; rigid vessel moving as a vertical sine, no tilt",
-        "contact line free to slide at 90 degrees; side walls without drag; the small waves that the meniscus sends out "
-        "are left out",
+        f"Newtonian liquid of one temperature, {_surface_text(case)}, no bubbles; rigid vessel moving as a vertical sine",
+        "contact line free to slide at 90 degrees; the small waves that the meniscus sends out are left out; the drag of "
+        "the side walls counts against the lower edge and is left out of the upper one",
         f"amplitudes up to {1e3 * case.amplitude_bound:g} mm (zero to peak) are searched",
         f"unevenness at the start {1e3 * bear.unevenness:.3g} mm",
     ]
@@ -78,8 +80,22 @@ def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
             f"modes one by one down to a wavelength of {2e3 * math.pi / case.spectrum.continuous_from:.3g} mm; below it "
             "every wavelength counts"
         )
-    elif case.vessel.kind == "unbounded":
+    if case.surroundings.cushion is not None:
+        lines.append(
+            "layer floating on trapped gas: a spring without leak; both surfaces are taken as if the other side were a rigid "
+            "base, good for wavelengths below about three depths; near resonance take the edges as estimates"
+        )
+    if case.vessel.kind == "unbounded":
         lines.append("no side walls: every wavelength counts")
     if case.liquid.vapour_pressure is None:
         lines.append("vapour pressure unknown, taken as 0")
     return tuple(lines)
+
+
+def _surface_text(case: Case) -> str:
+    around = case.surroundings
+    if around.below is not None:
+        return f"clean interface with {around.below.name} below"
+    if around.film_modulus is not None:
+        return f"surface film of {1e3 * around.film_modulus:.3g} mN/m"
+    return "surface covered by a skin" if around.surface == "covered" else "clean surface"

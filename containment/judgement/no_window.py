@@ -61,12 +61,12 @@ def _what_would_open(case: Case, window: HoldingWindow) -> str:
         )
         if viscosity * factor > 1e3:
             break
-        if _opens(Case(thicker, case.vessel, case.allowance), f, most):
+        if _opens(Case(thicker, case.vessel, case.allowance, case.surroundings), f, most):
             found.append(f"a viscosity of about {viscosity * factor:.2g} Pa s would open a window")
             break
     for factor in _TRIED_SIZES:
         smaller = _scaled(case.vessel, factor)
-        if smaller is not None and _opens(Case(case.liquid, smaller, case.allowance), f, most):
+        if smaller is not None and _opens(Case(case.liquid, smaller, case.allowance, case.surroundings), f, most):
             found.append(f"so would the same vessel at {factor:g} of its width" if found else
                          f"the same vessel at {factor:g} of its width would open one")  # fmt: skip
             break

@@ -7,11 +7,13 @@ from typing import Final
 import numpy as np
 import numpy.typing as npt
 
+from containment.constants import STANDARD_GRAVITY
 from containment.judgement.case import Case
 from containment.physics.completeness import count_growing
 from containment.physics.edges import Edges, edge_errors, matters
 from containment.physics.floquet import exponents, growing_exponents
 from containment.physics.hill import Half, rows_needed
+from containment.physics.layers import LayerModel
 
 __all__ = ["OperatingPoint", "judged_point"]
 
@@ -93,54 +95,79 @@ def judged_point(case: Case, *, frequency: float, acceleration: float) -> Operat
     growth = case.allowance.growth
     edges = case.edges(f)
     strict = edges if growth == 0.0 else case.edges(f, growth=0.0)
-    errors = [float(error[0]) for error in edge_errors(case.layer, edges, growth=growth)]
-    k, band = _wavenumbers(case, w, acceleration)
+    low, high = (float(gain[0]) for gain in case.gain(f))
+    if case.surroundings.cushion is None:
+        errors = tuple(float(error[0]) for error in edge_errors(case.layer, edges, growth=growth))
+    else:
+        errors = (math.nan, math.nan)  # the gas spring is known far less well than the thresholds
+    parts = [_counted(case, case.layer, w, acceleration * gain) for gain in dict.fromkeys((low, high))]
+    if case.surroundings.cushion is not None:
+        parts.append(_counted(case, case.layer_with(gravity=STANDARD_GRAVITY), w, acceleration * high))
+    worst = max(parts, key=lambda part: part.growth_rate)
+    return OperatingPoint(
+        frequency=frequency, acceleration=acceleration, edges=edges, strict=strict, growth_rate=worst.growth_rate,
+        worst_wavenumber=worst.wavenumber, worst_subharmonic=worst.subharmonic,
+        growing_modes=max(part.growing for part in parts), proven=all(part.proven for part in parts),
+        modes_checked=sum(part.checked for part in parts),
+        farthest_from_integer=max(part.distance for part in parts), lower_error=errors[0], upper_error=errors[1],
+    )  # fmt: skip
+
+
+@dataclass(frozen=True, slots=True)
+class _Counted:
+    growing: int
+    proven: bool
+    checked: int
+    distance: float
+    growth_rate: float
+    wavenumber: float
+    subharmonic: bool
+
+
+def _counted(case: Case, layer: LayerModel, w: float, acceleration: float) -> _Counted:
+    """Count the growing modes of a layer that moves with a peak acceleration, and find the fastest."""
+    growth = case.allowance.growth
+    k, band = _wavenumbers(case, layer, w, acceleration)
     if not len(k):
-        return OperatingPoint(
-            frequency=frequency, acceleration=acceleration, edges=edges, strict=strict, growth_rate=0.0,
-            worst_wavenumber=math.nan, worst_subharmonic=False, growing_modes=0, proven=True, modes_checked=0,
-            farthest_from_integer=0.0, lower_error=errors[0], upper_error=errors[1],
-        )  # fmt: skip
-    count = count_growing(case.layer, k, w, acceleration, growth=growth)
+        return _Counted(0, True, 0, 0.0, 0.0, math.nan, False)
+    count = count_growing(layer, k, w, acceleration, growth=growth)
     growing = count.growing > 0
     bands = growing & (band >= 0)
     starts = int(np.count_nonzero(bands[1:] & ~bands[:-1])) + int(bands[0])
     if growing.any():
-        found = growing_exponents(case.layer, k[growing], w, acceleration, above=growth)
         where = k[growing]
+        found = growing_exponents(layer, where, w, acceleration, above=growth)
         if not np.isfinite(found.exponent).any():  # grows at neither the drive frequency nor half of it
-            found = exponents(case.layer, where, w, acceleration)
+            found = exponents(layer, where, w, acceleration)
     else:
-        where = _slowest(k, edges)
-        found = exponents(case.layer, where, w, acceleration)
+        where = _slowest(k)
+        found = exponents(layer, where, w, acceleration)
     real = np.where(np.isfinite(found.exponent.real), found.exponent.real, -np.inf)
     worst = int(np.argmax(real))
-    return OperatingPoint(
-        frequency=frequency, acceleration=acceleration, edges=edges, strict=strict,
-        growth_rate=float(real[worst]), worst_wavenumber=float(where[worst]),
-        worst_subharmonic=bool(found.subharmonic[worst]),
-        growing_modes=int(np.count_nonzero(growing & (band < 0))) + starts,
-        proven=bool(count.proven.all()), modes_checked=len(k),
-        farthest_from_integer=float(count.distance.max()), lower_error=errors[0], upper_error=errors[1],
+    return _Counted(
+        int(np.count_nonzero(growing & (band < 0))) + starts, bool(count.proven.all()), len(k),
+        float(count.distance.max()), float(real[worst]), float(where[worst]), bool(found.subharmonic[worst]),
     )  # fmt: skip
 
 
-def _slowest(k: Real, edges: Edges) -> Real:
-    """Thin out the modes for the search of the slowest decay: all, or a regular choice with the binding ones."""
+def _slowest(k: Real) -> Real:
+    """Thin out the modes for the search of the slowest decay, where they are many."""
     if len(k) <= _MOST_MODES_IN_FULL:
         return k
-    chosen = k[np.unique(np.round(np.geomspace(1, len(k), _MOST_MODES_IN_FULL)).astype(int)) - 1]
-    binding = [x for x in (edges.lower_wavenumber[0], edges.upper_wavenumber[0]) if np.isfinite(x) and x > 0.0]
-    return np.unique(np.concatenate([chosen, binding]))
+    chosen = np.unique(np.round(np.geomspace(1, len(k), _MOST_MODES_IN_FULL)).astype(np.intp)) - 1
+    result: Real = k[chosen]
+    return result
 
 
-def _wavenumbers(case: Case, w: float, acceleration: float) -> tuple[Real, npt.NDArray[np.int64]]:
+def _wavenumbers(
+    case: Case, layer: LayerModel, w: float, acceleration: float
+) -> tuple[Real, npt.NDArray[np.int64]]:
     """Return the wavenumbers that can matter; the second array is -1 for modes taken one by one, else >= 0.
 
     Where every wavenumber counts, nodes are set and halved until the Hill determinants change by less than a factor of
     two from node to node, so that no band of growth hides between two of them.
     """
-    spectrum, layer = case.spectrum, case.layer
+    spectrum = case.spectrum
     discrete = spectrum.discrete
     if len(discrete):
         discrete = discrete[matters(layer, discrete, np.array(w), np.array(acceleration))]
@@ -153,18 +180,18 @@ def _wavenumbers(case: Case, w: float, acceleration: float) -> tuple[Real, npt.N
     if not needed.any():
         return discrete, np.full(len(discrete), -1)
     last = int(np.flatnonzero(needed)[-1])
-    nodes = _resolved(case, nodes[: last + 2], w, acceleration)
+    nodes = _resolved(layer, nodes[: last + 2], w, acceleration, case.allowance.growth)
     return np.concatenate([discrete, nodes]), np.concatenate([np.full(len(discrete), -1), np.zeros(len(nodes), int)])
 
 
-def _resolved(case: Case, nodes: Real, w: float, acceleration: float) -> Real:
+def _resolved(layer: LayerModel, nodes: Real, w: float, acceleration: float, growth: float) -> Real:
     rows = rows_needed(acceleration / (w * w), float(nodes[-1]))
 
     def margins(k: Real) -> Real:
         each = np.full(len(k), w)
         push = np.full(len(k), acceleration)
         return np.stack([
-            Half.of(case.layer, k, each, case.allowance.growth, rows, subharmonic=sub).margin(push) for sub in (False, True)
+            Half.of(layer, k, each, growth, rows, subharmonic=sub).margin(push) for sub in (False, True)
         ])
 
     values = margins(nodes)

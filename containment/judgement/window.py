@@ -165,8 +165,9 @@ def search_window(
     Returns
     -------
     HoldingWindow
-        Corners are refined by zooming between nodes: edges to 2e-6 in frequency, the point of largest margin to 1e-3. Where the openness of the window has a peak between
-        nodes the peak is looked into, so that a narrow window is not overlooked.
+        Corners are refined by zooming between nodes: edges to 2e-6 in frequency, the point of largest margin to 1e-3.
+        Where the openness of the window has a peak between nodes the peak is looked into, so that a narrow window is
+        not overlooked.
     """
     nodes = np.geomspace(*frequency_range, _NODES) if frequencies is None else np.sort(np.asarray(frequencies, float))
 
