@@ -39,9 +39,10 @@ def why_no_window(case: Case, window: HoldingWindow, drive: DriveLimits) -> Hold
         i = int(np.flatnonzero(waves_allow)[np.argmin(window.lower[waves_allow])])
         least, f = float(window.lower[i]), float(window.frequencies[i])
         stroke = 2e3 * least / (2.0 * math.pi * f) ** 2
-        what = "the drive or pull-off from the base ends" if drive.stated else "pull-off from the base ends"
+        ends = ["the drive"] if drive.stated else []
+        what = " or ".join([*ends, "pull-off from the base", f"the amplitude searched ({1e3 * case.amplitude_bound:g} mm)"])
         reason = (
-            f"{what} below what holds: about {least / STANDARD_GRAVITY:.3g} g_n at {f:.3g} Hz ({stroke:.3g} mm peak to peak) "
+            f"{what} ends below what holds: about {least / STANDARD_GRAVITY:.3g} g_n at {f:.3g} Hz ({stroke:.3g} mm peak to peak) "
             "is needed"
         )
     else:

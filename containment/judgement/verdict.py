@@ -168,8 +168,9 @@ def _other_ceiling(case: Case, drive: DriveLimits, f: Any) -> Any:
         density=case.liquid.density, depth=case.vessel.depth, vapour_pressure=case.liquid.vapour_pressure or 0.0,
         ambient_pressure=case.surroundings.ambient_pressure,
     )  # fmt: skip
+    searched = case.amplitude_bound * (2.0 * math.pi * np.asarray(f)) ** 2  # beyond it nothing is known
     reached = drive.largest_acceleration(f, product_mass=case.product_mass or 0.0)
-    return np.minimum(reached, pull / case.gain(f)[1])
+    return np.minimum(reached, np.minimum(pull, searched) / case.gain(f)[1])
 
 
 def _window(

@@ -18,7 +18,7 @@ import numpy.typing as npt
 
 from containment.physics.crossings import refined
 
-__all__ = ["RimModes", "annulus_rim", "cylinder_rim"]
+__all__ = ["RimModes", "annulus_rim", "cylinder_rim", "end_weights", "nodes_beyond"]
 
 Real = npt.NDArray[np.float64]
 
@@ -87,9 +87,9 @@ def cylinder_rim(*, radius: float, order: int, discrete: int, reach: float, node
     from scipy.special import jnp_zeros  # slow to import, and only pinned rims need it
 
     zeros = jnp_zeros(order, discrete)
-    weights = _end_weights(discrete)
+    weights = end_weights(discrete)
     heights = np.sqrt(2.0 * weights / (1.0 - (order / zeros) ** 2)) / radius
-    x, dx = _beyond(float(zeros[-1]), max(reach * radius, 30.0 * float(zeros[-1])), nodes)
+    x, dx = nodes_beyond(float(zeros[-1]), max(reach * radius, 30.0 * float(zeros[-1])), nodes)
     # b^2 dj/dx: the factors x^2 - m^2 cancel
     beyond = np.sqrt(dx * 4.0 / (math.pi**2 * x * _modulus_squared(order, x))) / radius
     return RimModes(
@@ -130,8 +130,8 @@ def annulus_rim(*, inner: float, outer: float, order: int, discrete: int, reach:
     parts_k, tails = [k], []
     for family in families:
         members = k[family]
-        weights[family] = _end_weights(len(members))
-        q, dq = _beyond(float(members[-1]), max(reach, 30.0 * float(members[-1])), nodes)
+        weights[family] = end_weights(len(members))
+        q, dq = nodes_beyond(float(members[-1]), max(reach, 30.0 * float(members[-1])), nodes)
         first, second = _annulus_heights(order, inner, outer, q)
         density = 0.5 * dq * _annulus_density(order, inner, outer, q)
         tails.append(np.sqrt(density) * np.stack([first, sign[family][-1] * second]))
@@ -141,7 +141,7 @@ def annulus_rim(*, inner: float, outer: float, order: int, discrete: int, reach:
     return RimModes(order, np.concatenate(parts_k), np.concatenate(parts_b, axis=1), discrete)
 
 
-def _end_weights(count: int) -> Real:
+def end_weights(count: int) -> Real:
     """Return the weights of the summands 1 ... J when the integral from J on stands for the rest.
 
     sum from J on = integral + f(J)/2 - f'(J)/12 + f'''(J)/720 - f^(5)(J)/30240, derivatives by backward differences.
@@ -156,7 +156,7 @@ def _end_weights(count: int) -> Real:
     return weights
 
 
-def _beyond(start: float, reach: float, nodes: int) -> tuple[Real, Real]:
+def nodes_beyond(start: float, reach: float, nodes: int) -> tuple[Real, Real]:
     """Return nodes and weights of the integral from `start` to infinity: Gauss in log x up to `reach`, then in 1/x."""
     t, w = np.polynomial.legendre.leggauss(nodes)
     half = 0.5 * math.log(reach / start)
