@@ -14,7 +14,6 @@ Kumar, K. & Tuckerman, L. S. (1994), J. Fluid Mech. 279, 49-68 (rows of the shak
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
 from typing import Final
 
 import numpy as np
@@ -22,7 +21,9 @@ import numpy.typing as npt
 
 from containment.physics.crossings import first_crossing, refined
 from containment.physics.hill import Half, rows_needed
+from containment.physics.pinned_box_edges import box_edges
 from containment.physics.pinned_hill import PinnedHalf, harmonics_at_work, reach_factors
+from containment.physics.pinned_search import PinnedEdges, bisected, edge_error, last_above, last_lower_root
 from containment.physics.pinned_static import (
     PinnedLayer,
     Sums,
@@ -41,35 +42,6 @@ Real = npt.NDArray[np.float64]
 Whole = npt.NDArray[np.int64]
 
 _ORDERS_AT_ONCE: Final = 6
-_LOWER_STEP: Final = 0.3
-"""Step in log a of the march to the last lower root: the count of shapes that still fall can't be stepped over."""
-
-
-@dataclass(frozen=True, slots=True)
-class PinnedEdges:
-    """Holding window of a pinned layer.
-
-    Attributes
-    ----------
-    frequencies : array, shape (F,)
-        Hz.
-    lower, upper : array, shape (F,)
-        Peak acceleration, m/s^2: held for lower < a < upper. `lower` is 0 where nothing needs holding and infinite
-        where no amplitude up to the bound holds; `upper` is infinite where nothing breaks up below the bound.
-    lower_error, upper_error : array, shape (F,)
-        Estimated bound of the numerical error, m/s^2: four times the change on refining the sums (half as many modes
-        again, more nodes, more harmonics). An estimate, not a proof.
-    lower_order, upper_order : array of int, shape (F,)
-        Circumferential order that sets the edge; -1 where there is none.
-    """
-
-    frequencies: Real
-    lower: Real
-    upper: Real
-    lower_error: Real
-    upper_error: Real
-    lower_order: Whole
-    upper_order: Whole
 
 
 def pinned_lower_roots(
@@ -112,8 +84,8 @@ def pinned_lower_roots(
     count = int(static_pinned_count(layer, rim, growth))
     roots = []
     for left in range(count - 1, -1, -1):
-        low, high = _last_above(half, start, stop, left)
-        roots.append(float(_bisected(half, low, high, left)[0]) if np.isfinite(high[0]) else math.inf)
+        low, high = last_above(half, start, stop, left)
+        roots.append(float(bisected(half, low, high, left)[0]) if np.isfinite(high[0]) else math.inf)
     return np.array(roots)
 
 
@@ -167,6 +139,8 @@ def pinned_edges(
     """
     check_pinned(layer, kind, dims)
     f = np.asarray(frequencies, np.float64)
+    if kind == "box":
+        return box_edges(layer, dims, f, growth=growth, amplitude_bound=amplitude_bound)
     sums = sums_for(layer, kind, dims, f)
     finer = Sums(sums.discrete + sums.discrete // 2, sums.nodes + 8, 3.0 * sums.reach)
     w = 2.0 * np.pi * f
@@ -211,8 +185,8 @@ def pinned_edges(
         f,
         np.where(np.isnan(better_lower), lower, better_lower),
         np.where(np.isnan(better_upper), upper, better_upper),
-        _error(lower, better_lower),
-        _error(upper, better_upper),
+        edge_error(lower, better_lower),
+        edge_error(upper, better_upper),
         lower_order,
         upper_order,
     )
@@ -228,13 +202,7 @@ def _block_edges(
     low = np.zeros(len(half))
     chosen = np.flatnonzero(np.repeat(falling > 0, len(f)))
     if len(chosen):
-        part = half.take(chosen)
-        below, above = _last_above(part, start[chosen], stops[chosen], 0)
-        finite = np.flatnonzero(np.isfinite(above))
-        low[chosen] = np.inf
-        low[chosen[finite]] = refined(
-            part.take(finite).margin, below[finite], above[finite], precision=1e-9, take=part.take(finite).take
-        )
+        low[chosen] = last_lower_root(half.take(chosen), start[chosen], stops[chosen])
         start[chosen] = low[chosen] * (1.0 + 1e-8)
     sub, sub_start = _halves(layer, rims, f, growth, stop, subharmonic=True)
     subharmonic = first_crossing(sub, sub_start, caps, turns=_turns(sub, caps))
@@ -243,36 +211,6 @@ def _block_edges(
     start = np.where(np.isfinite(start), start, 2.0 * caps)
     harmonic = first_crossing(half, start, caps, turns=_turns(half, caps))
     return low.reshape(shape), np.minimum(harmonic, subharmonic).reshape(shape), (subharmonic < harmonic).reshape(shape)
-
-
-def _last_above(half: PinnedHalf, start: Real, stop: Real, left: int) -> tuple[Real, Real]:
-    """Return brackets of the acceleration above which at most `left` shapes fall; infinite beyond `stop`."""
-    low, high = np.zeros(len(start)), np.full(len(start), np.inf)
-    many = half.count(start) > left
-    high[~many] = 0.0
-    index = np.flatnonzero(many)
-    at = start[index]
-    low[index] = at
-    while len(index):
-        after = np.minimum(at * math.exp(_LOWER_STEP), stop[index])
-        passed = half.take(index).count(after) <= left
-        low[index] = np.where(passed | (after < stop[index]), at, stop[index])
-        high[index[passed]] = after[passed]
-        keep = ~passed & (after < stop[index])
-        index, at = index[keep], after[keep]
-    return low, high
-
-
-def _bisected(half: PinnedHalf, low: Real, high: Real, left: int) -> Real:
-    """Return the point in each bracket from which on at most `left` falling shapes are left, to 1e-10."""
-    low, high = low.copy(), high.copy()
-    for _ in range(50):
-        mid = np.sqrt(low * high)
-        still = half.count(mid) > left
-        low, high = np.where(still, mid, low), np.where(still, high, mid)
-        if np.all(high <= low * (1.0 + 1e-10)):
-            break
-    return np.sqrt(low * high)
 
 
 def _refined_edge(
@@ -303,12 +241,6 @@ def _refined_edge(
         root = refined(half.margin, low, high, precision=1e-10)
         result[here] = np.where(bad, np.nan, root)
     return result
-
-
-def _error(coarse: Real, fine: Real) -> Real:
-    with np.errstate(invalid="ignore"):
-        change = np.where(np.isfinite(coarse), 4.0 * np.abs(fine - coarse) + 1e-9 * coarse, 0.0)
-    return np.where(np.isnan(fine), np.inf, change)
 
 
 def _halves(

@@ -15,6 +15,7 @@ from typing import Protocol
 import numpy as np
 import numpy.typing as npt
 
+from containment.errors import NotComputableError
 from containment.physics.pinned_hill import SPARE_ROWS, harmonics_at_work, reach_factors, summed_inverse
 from containment.physics.pinned_static import PinnedLayer, check_pinned, rim_modes, sums_for
 from containment.physics.rim_modes import RimModes
@@ -66,6 +67,14 @@ class PinnedCount:
     proven: bool
     orders: int
     worst_order: int
+
+
+def _refuse_box(kind: str) -> None:
+    if kind == "box":
+        raise NotComputableError(
+            "growing exponents of a box with a pinned contact line: too many conditions along its sides to count them; "
+            "its edges can be computed"
+        )
 
 
 def order_matters(layer: BoundedPinnedLayer, rim: RimModes, w: float, acceleration: float) -> bool:
@@ -192,6 +201,7 @@ def pinned_growing_count(
     1
     """
     check_pinned(layer, kind, dims)
+    _refuse_box(kind)
     sums = sums_for(layer, kind, dims, np.array([frequency]))
     rim = rim_modes(kind, dims, order, discrete=sums.discrete, nodes=sums.nodes, reach=sums.reach)
     return rim_growing_count(layer, rim, 2.0 * np.pi * frequency, acceleration, growth=growth)
@@ -212,7 +222,7 @@ def pinned_fastest_growth(
     Raises
     ------
     NotComputableError
-        A winding number is not an integer.
+        A winding number is not an integer, or the vessel is a box.
 
     Examples
     --------
@@ -223,6 +233,7 @@ def pinned_fastest_growth(
     4.8366
     """
     check_pinned(layer, kind, dims)
+    _refuse_box(kind)
     w = 2.0 * np.pi * frequency
     sums = sums_for(layer, kind, dims, np.array([frequency]))
     rim = rim_modes(kind, dims, order, discrete=sums.discrete, nodes=sums.nodes, reach=sums.reach)
@@ -254,6 +265,7 @@ def pinned_growing(
     (0, True)
     """
     check_pinned(layer, kind, dims)
+    _refuse_box(kind)
     w = 2.0 * np.pi * frequency
     sums = sums_for(layer, kind, dims, np.array([frequency]))
     total, proven, order, most, worst = 0, True, 0, 0, -1

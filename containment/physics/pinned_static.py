@@ -18,6 +18,7 @@ import numpy.typing as npt
 
 from containment.constants import STANDARD_GRAVITY
 from containment.errors import InputError, NotComputableError
+from containment.physics.pinned_box import box_lines, box_rim
 from containment.physics.rim_modes import FEWEST_DISCRETE, RimModes, annulus_rim, cylinder_rim
 
 __all__ = [
@@ -37,6 +38,7 @@ Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
 
 _MOST_DISCRETE: Final = 240
+_MOST_DISCRETE_BOX: Final = 40
 
 
 class PinnedLayer(Protocol):
@@ -81,13 +83,18 @@ def rim_modes(kind: str, dims: Sequence[float], order: int, *, discrete: int, no
     Parameters
     ----------
     kind : str
-        "cylinder" with dims (radius,), or "annulus" with dims (inner radius, outer radius), m.
+        "cylinder" with dims (radius,), "annulus" with dims (inner radius, outer radius), "box" with dims (W, L), m.
     dims : sequence of float
     order, discrete, nodes, reach
         See `containment.physics.rim_modes.cylinder_rim`.
     """
     if kind == "cylinder":
         return cylinder_rim(radius=dims[0], order=order, discrete=discrete, nodes=nodes, reach=reach)
+    if kind == "box":
+        if order not in (0, 1, 2, 3):
+            raise InputError(f"order {order} of a box: must be its parities, 0 to 3")
+        lines = box_lines(dims=dims, parity=order, discrete=(discrete, discrete), nodes=nodes, reach=reach)
+        return box_rim(lines, order)
     return annulus_rim(inner=dims[0], outer=dims[1], order=order, discrete=discrete, nodes=nodes, reach=reach)
 
 
@@ -103,7 +110,7 @@ def static_pinned_growth(
     kind, dims
         Vessel, see `rim_modes`.
     order : int
-        Circumferential order m.
+        Circumferential order m; for a box the parities, see `containment.physics.pinned_box.box_lines`.
     precision : float
         Relative precision of the growth rates.
 
@@ -127,7 +134,7 @@ def static_pinned_growth(
     [0, 1]
     """
     check_pinned(layer, kind, dims)
-    rim = rim_modes(kind, dims, order, discrete=_fewest(layer, dims), nodes=24, reach=1e4 * _cut_off(layer))
+    rim = rim_modes(kind, dims, order, discrete=_fewest(layer, kind, dims), nodes=24, reach=1e4 * _cut_off(layer))
 
     def faster(s: float) -> int:
         return int(static_pinned_count(layer, rim, s))
@@ -189,7 +196,7 @@ def pinned_wave_frequencies(
     >>> round(float(waves[0]), 2)
     4.68
     """
-    rim = rim_modes(kind, dims, order, discrete=4 * FEWEST_DISCRETE + 2 * count, nodes=24, reach=1e3 / _span(dims))
+    rim = rim_modes(kind, dims, order, discrete=4 * FEWEST_DISCRETE + 2 * count, nodes=24, reach=1e3 / _span(kind, dims))
     k = rim.wavenumbers
     stiffness = gravity + surface_tension / density * k * k
     inertia = 1.0 / (k * np.tanh(k * depth))
@@ -225,13 +232,16 @@ def _count(rim: RimModes, a0: Real) -> int:
 
 
 def smallest_stiffness(layer: PinnedLayer, rim: RimModes, growth: float) -> float:
-    """Return about half the size of the static stiffness of the pinned shape nearest to neutral, m/s^2."""
+    """Return the size of the static stiffness of the pinned shape nearest to neutral, m/s^2, a little below it.
+
+    The number of shapes with a stiffness below x is the count for A - x, so x is bisected on the number in (-x, x).
+    """
     a0 = layer.coefficient(growth, rim.wavenumbers).real
-    # the shapes near neutral hardly feel modes much stiffer; leaving these out keeps the small eigenvalues accurate
-    kept = a0 < 1e4 * max(abs(float(np.min(a0))), float(np.partition(a0, 3)[3]))
-    basis = np.linalg.qr(rim.heights[:, kept].T, mode="complete")[0][:, len(rim.heights) :]
-    values = np.linalg.eigvalsh(basis.T @ (a0[kept, None] * basis))
-    return 0.5 * float(np.min(np.abs(values)))
+    low, high = 1e-9, 1e9
+    while high > 1.05 * low:
+        mid = math.sqrt(low * high)
+        low, high = (low, mid) if _count(rim, a0 - mid) > _count(rim, a0 + mid) else (mid, high)
+    return low
 
 
 def sharp_resonance(layer: PinnedLayer, w: Real) -> Real:
@@ -247,12 +257,14 @@ def _cut_off(layer: PinnedLayer) -> float:
     return math.sqrt(layer.density * STANDARD_GRAVITY / layer.surface_tension)
 
 
-def _fewest(layer: PinnedLayer, dims: Sequence[float]) -> int:
-    return max(2 * FEWEST_DISCRETE, math.ceil(2.0 * _cut_off(layer) * _span(dims) / math.pi))
+def _fewest(layer: PinnedLayer, kind: str, dims: Sequence[float]) -> int:
+    return max(2 * FEWEST_DISCRETE, math.ceil(2.0 * _cut_off(layer) * _span(kind, dims) / math.pi))
 
 
-def _span(dims: Sequence[float]) -> float:
-    return dims[0] if len(dims) == 1 else dims[-1] - dims[0]
+def _span(kind: str, dims: Sequence[float]) -> float:
+    if kind == "box":
+        return 0.5 * max(dims)  # of the cosines of one parity along a side, every second one
+    return dims[0] if kind == "cylinder" else dims[-1] - dims[0]
 
 
 def sums_for(layer: PinnedLayer, kind: str, dims: Sequence[float], f: Real) -> Sums:
@@ -260,16 +272,17 @@ def sums_for(layer: PinnedLayer, kind: str, dims: Sequence[float], f: Real) -> S
     w = 2.0 * np.pi * float(np.max(f))
     harmonics = np.arange(1, 7) / 2.0
     shortest = 1.2 * max(_cut_off(layer), float(np.max(sharp_resonance(layer, harmonics * w))))
-    families = 1 if kind == "cylinder" else 2
-    discrete = families * FEWEST_DISCRETE + math.ceil(shortest * _span(dims) / math.pi)
-    if discrete > _MOST_DISCRETE:
+    families = 2 if kind == "annulus" else 1
+    most = _MOST_DISCRETE_BOX if kind == "box" else _MOST_DISCRETE
+    discrete = families * FEWEST_DISCRETE + math.ceil(shortest * _span(kind, dims) / math.pi)
+    if discrete > most:
         raise NotComputableError(
             f"pinned contact line at {float(np.max(f)):.4g} Hz: {discrete} modes of each order would have to be summed "
-            f"one by one, at most {_MOST_DISCRETE} can be; the vessel is too wide for its waves, or the frequency too "
+            f"one by one, at most {most} can be; the vessel is too wide for its waves, or the frequency too "
             "high"
         )
     reach = 10.0 * max(shortest, 6.0 * layer.viscosity * w / layer.surface_tension)
-    start = discrete * math.pi / _span(dims)
+    start = discrete * math.pi / _span(kind, dims)
     return Sums(discrete, math.ceil(1.6 * math.log(max(reach / start, 30.0))) + 6, reach)
 
 
@@ -286,10 +299,12 @@ def check_pinned(layer: PinnedLayer, kind: str, dims: Sequence[float]) -> None:
             f"surface tension {layer.surface_tension} N/m with a pinned contact line: must be positive, "
             "a rim holds the surface by tension alone"
         )
-    if (kind, len(dims)) not in (("cylinder", 1), ("annulus", 2)):
+    if (kind, len(dims)) not in (("cylinder", 1), ("annulus", 2), ("box", 2)):
         raise InputError(
-            f"pinned contact line in a vessel of kind {kind!r} with {len(dims)} dimensions: only a cylinder (radius) "
-            "and an annulus (inner, outer radius) can be computed"
+            f"pinned contact line in a vessel of kind {kind!r} with {len(dims)} dimensions: must be a cylinder (radius), "
+            "an annulus (inner, outer radius) or a box (width, length)"
         )
-    if not 0.0 < dims[0] <= dims[-1] < math.inf or (len(dims) == 2 and dims[0] == dims[1]):
-        raise InputError(f"radii {tuple(dims)} m of a {kind}: must be positive and in rising order")
+    if not all(0.0 < length < math.inf for length in dims):
+        raise InputError(f"dimensions {tuple(dims)} m of the vessel ({kind}): must be positive")
+    if kind == "annulus" and not dims[0] < dims[1]:
+        raise InputError(f"radii {tuple(dims)} m of an annulus: must be in rising order")

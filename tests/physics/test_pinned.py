@@ -217,8 +217,10 @@ def test_inputs_that_cannot_be_computed_are_refused():
     dry = Layer(density=1410.0, viscosity=10.0, surface_tension=0.0, depth=0.03)
     with pytest.raises(InputError, match="surface tension 0.0"):
         pinned_edges(dry, "cylinder", (0.035,), [50.0])
-    with pytest.raises(InputError, match="'box'"):
-        pinned_edges(SYRUP, "box", (0.06, 0.08), [50.0])
+    with pytest.raises(InputError, match="'slot'"):
+        pinned_edges(SYRUP, "slot", (0.06,), [50.0])
+    with pytest.raises(InputError, match="must be positive"):
+        pinned_edges(SYRUP, "cylinder", (0.0,), [50.0])
     with pytest.raises(InputError, match="rising order"):
         static_pinned_growth(SYRUP, "annulus", (0.035, 0.015), 0)
     with pytest.raises(InputError, match="falls at rest"):
