@@ -78,7 +78,9 @@ def first_crossing(
         done = crossed | last
         if dip.any():
             chosen = np.flatnonzero(dip)
-            bottom = _bottom(active.take(chosen), a0[chosen], a1[chosen], a2[chosen], v1[chosen])
+            bottom = _bottom(
+                active.take(chosen), a0[chosen], a1[chosen], a2[chosen], v1[chosen], np.maximum(np.abs(v0), np.abs(v2))[chosen]
+            )
             hit = np.isfinite(bottom)
             if hit.any():
                 found.append(index[chosen[hit]])
@@ -100,24 +102,27 @@ def first_crossing(
     return result
 
 
-def _bottom(cases: Cases, a0: Real, a1: Real, a2: Real, v1: Real) -> Real:
+def _bottom(cases: Cases, a0: Real, a1: Real, a2: Real, v1: Real, outer: Real) -> Real:
     """Return a point of the other sign inside each dip, or infinity: golden sections on the magnitude in log a."""
     left, mid, right = np.log(a0), np.log(a1), np.log(a2)
     sign = np.sign(v1)
     best = np.abs(v1)
+    width = right - left
     result = np.full(len(a0), np.inf)
     for _ in range(40):
         wider_right = (right - mid) > (mid - left)
         probe = np.where(wider_right, mid + _GOLDEN * (right - mid), mid - _GOLDEN * (mid - left))
         value = cases.margin(np.exp(probe)) * sign
         result = np.where((value <= 0.0) & np.isinf(result), np.exp(probe), result)
-        if np.isfinite(result).all():
-            break
         lower = value < best
         left = np.where(lower, np.where(wider_right, mid, left), np.where(wider_right, left, probe))
         right = np.where(lower, np.where(wider_right, right, mid), np.where(wider_right, probe, right))
         best = np.where(lower, value, best)
         mid = np.where(lower, probe, mid)
+        # settled where it is crossed, or where a parabola with a root inside the bracket would lie far below the best value
+        narrow = 100.0 * outer * ((right - left) / width) ** 2 < best
+        if np.all(np.isfinite(result) | narrow):
+            break
     return result
 
 

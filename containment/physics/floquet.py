@@ -140,7 +140,7 @@ def static_growth_rate(layer: SlopedLayer, wavenumber: npt.ArrayLike) -> Real:
     >>> from containment.physics.dispersion import Layer
     >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
     >>> [round(float(s), 3) for s in static_growth_rate(layer, [52.6, 500.0])]
-    [4.374, 0.0]
+    [5.768, 0.0]
     """
     k = np.asarray(wavenumber, dtype=np.float64)
     flat = k.ravel()
