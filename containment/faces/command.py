@@ -20,6 +20,8 @@ SUBCOMMANDS: Final = {
     "table": ("containment.faces.command_table", "the property tables, or one entry with its sources"),
 }
 
+_MAY_REPEAT: Final = ("--table",)
+
 _EXITS: Final = "exit status: 0 held, 1 not held, 2 bad input, 3 marginal or not proven, 4 internal failure"
 
 
@@ -28,7 +30,7 @@ class _Parser(argparse.ArgumentParser):
 
     def error(self, message: str) -> NoReturn:
         """Print one line on stderr and leave with status 2."""
-        sys.stderr.write(f"{self.prog}: {message}\n")
+        sys.stderr.write(f"{self.prog}: {_one_line(message)}\n")
         raise SystemExit(2)
 
 
@@ -51,7 +53,10 @@ def main(arguments: Sequence[str] | None = None) -> int:
         )
         if name == chosen:  # only the chosen sub-command's module is imported
             importlib.import_module(module).add_arguments(sub)
-    options = parser.parse_args(_with_negative_values_joined(arguments))
+    arguments = _with_negative_values_joined(arguments)
+    for option in _repeated(arguments):
+        parser.error(f"{option}: given more than once; expected once")
+    options = parser.parse_args(arguments)
     return _run(SUBCOMMANDS[options.command][0], options)
 
 
@@ -67,12 +72,24 @@ def _with_negative_values_joined(arguments: list[str]) -> list[str]:
     return joined
 
 
+def _repeated(arguments: list[str]) -> list[str]:
+    """Return the options that are given twice: argparse would drop the first value without a word."""
+    names = [argument.partition("=")[0] for argument in arguments if argument.startswith("--")]
+    return sorted({name for name in names if names.count(name) > 1 and name not in _MAY_REPEAT})
+
+
+def _one_line(message: str) -> str:
+    """Return a message as one printable line of bounded length, whatever was typed."""
+    line = "".join(c if c.isprintable() else "?" for c in message)
+    return line if len(line) <= 400 else line[:397] + "..."
+
+
 def _run(module: str, options: argparse.Namespace) -> int:
     try:
         status: int = importlib.import_module(module).run(options)
         sys.stdout.flush()
     except ContainmentError as error:
-        sys.stderr.write(f"containment: {error}\n")
+        sys.stderr.write(f"containment: {_one_line(str(error))}\n")
         return 2
     except KeyboardInterrupt:
         return 130

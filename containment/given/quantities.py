@@ -58,7 +58,6 @@ pound = 0.45359237 * kilogram = lb
 pound_force = 4.4482216152605 * newton = lbf
 degree_Celsius = kelvin; offset: {-ABSOLUTE_ZERO_CELSIUS!r} = °C = celsius = degC
 degree_Fahrenheit = 5 / 9 * kelvin; offset: 255.3722222222222 = °F = fahrenheit = degF
-delta_degree_Celsius = kelvin = delta_degC
 """
 
 KINDS: Final[dict[str, tuple[str, str]]] = {
@@ -83,7 +82,7 @@ KINDS: Final[dict[str, tuple[str, str]]] = {
 }
 """Kinds of quantity: SI unit and an example for messages."""
 
-_NUMBER: Final = re.compile(r"\s*([+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?)\s*(.*?)\s*", re.DOTALL)
+_NUMBER: Final = re.compile(r"\s*([+-]?(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?)\s*(.*?)\s*", re.DOTALL)
 _TURNS: Final = {"rpm": 1.0 / 60.0, "r/min": 1.0 / 60.0, "rev/min": 1.0 / 60.0, "1/min": 1.0 / 60.0, "rps": 1.0}
 
 
@@ -163,7 +162,7 @@ def parse_quantity(text: str, kind: str, name: str) -> float:
     if kind == "frequency":
         if unit.replace(" ", "") in _TURNS:
             return number * _TURNS[unit.replace(" ", "")]
-        if "rad" in unit:
+        if "rad" in unit or "deg" in unit:
             raise InputError(f"{name}: {_shown(text)} is an angular frequency; expected {_expected(kind)}")
     if kind == "acceleration" and unit in {"g", "G", "gn", "gee"}:
         raise InputError(
