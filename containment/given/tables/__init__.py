@@ -1,4 +1,4 @@
-"""Property tables: liquids, granular materials, drives, each with its sources."""
+"""Property tables: liquids, granular materials and drives by generic names; a user's own tables beside them."""
 
 from containment.given.tables.entries import DriveEntry, GrainEntry, LiquidEntry, Property
 from containment.given.tables.lookup import (
@@ -8,6 +8,7 @@ from containment.given.tables.lookup import (
     grain_names,
     liquid_entry,
     liquid_names,
+    table_notices,
 )
 
 __all__ = [
@@ -21,4 +22,5 @@ __all__ = [
     "grain_names",
     "liquid_entry",
     "liquid_names",
+    "table_notices",
 ]

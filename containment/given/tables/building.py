@@ -1,322 +1,389 @@
-"""From the rows of an entry to the entry, all faults of its rows collected."""
+"""From the rows of an entry to the entry; what is wrong goes to the file's faults."""
 
 import math
-import re
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping, Sequence
+from dataclasses import dataclass, field
 from typing import Any, Final
 
-from containment.constants import ABSOLUTE_ZERO_CELSIUS
+import numpy as np
+
 from containment.errors import InputError
-from containment.given.quantities import parse_quantity
 from containment.given.tables.entries import DriveEntry, GrainEntry, LiquidEntry, Property
+from containment.given.tables.faults import Faults, shown
 from containment.given.tables.laws import LAWS
-from containment.given.tables.rows import Fault, Record, Row, shown
+from containment.given.tables.rows import Row
+from containment.given.tables.units import factor_of, number_of, ratio_of, temperature_of
 
-__all__ = ["build_drive", "build_grain", "build_liquid"]
+__all__ = ["GRAIN_FIELDS", "HAZARD_TOPICS", "LIQUID_PROPERTIES", "RHEOLOGY_MODELS", "build"]
 
-_KNOWN_FACTORS: Final = {
-    # the units of the built-in tables, so that no unit library is loaded for them
-    ("density", "kg/m3"): 1.0,
-    ("viscosity", "Pa*s"): 1.0,
-    ("viscosity", "mPa*s"): 1e-3,
-    ("kinematic viscosity", "mm2/s"): 1e-6,
-    ("surface tension", "N/m"): 1.0,
-    ("surface tension", "mN/m"): 1e-3,
-    ("pressure", "Pa"): 1.0,
-    ("length", "mm"): 1e-3,
-    ("length", "um"): 1e-6,
-    ("angle", "deg"): math.pi / 180.0,
-    ("velocity", "m/s"): 1.0,
-    ("acceleration", "m/s2"): 1.0,
-    ("acceleration", "g_n"): 9.80665,
-    ("force", "N"): 1.0,
-    ("mass", "kg"): 1.0,
-    ("frequency", "Hz"): 1.0,
-    ("ratio", ""): 1.0,
+HAZARD_TOPICS: Final = (
+    "flammable", "toxic", "corrosive", "irritant", "slippery", "hot", "sticky", "environment", "reactive", "dust explosion",
+    "inhalation", "static", "table",
+)  # fmt: skip
+"""Topics that a hazard may have; its row reads ``topic: sentence``."""
+
+LIQUID_PROPERTIES: Final = {
+    # field: (kinds of unit that state it, least, most), SI
+    "density": (("density",), 1.0, 3e4),
+    "viscosity": (("viscosity", "kinematic viscosity"), 1e-6, 1e6),
+    "surface_tension": (("surface tension",), 1e-5, 10.0),
+    "vapour_pressure": (("pressure",), 0.0, 1e7),
 }
-_LIQUID: Final = {
-    "density": "density",
-    "viscosity": "viscosity",
-    "surface_tension": "surface tension",
-    "vapour_pressure": "pressure",
+"""Properties of a liquid."""
+
+RHEOLOGY_MODELS: Final = {
+    "maxwell": ("viscosity", "relaxation"),
+    "jeffreys": ("viscosity", "relaxation", "retardation"),
+    "kelvin-voigt": ("viscosity", "modulus"),
+    "carreau": ("zero_shear", "infinite_shear", "time", "index"),
+    "cross": ("zero_shear", "infinite_shear", "time", "exponent"),
+    "power-law": ("consistency", "index"),
+    "herschel-bulkley": ("yield_stress", "consistency", "index"),
 }
-_GRAIN: Final = {
-    "bulk_density": "density",
-    "particle_density": "density",
-    "d10": "length",
-    "d50": "length",
-    "d90": "length",
-    "angle_of_repose": "angle",
-    "wall_friction": "ratio",
-    "unconfined_yield_strength": "pressure",
+"""Models of a liquid that is not Newtonian and their parameters in SI, as the physics names them."""
+
+GRAIN_FIELDS: Final = {
+    # field: (kind of unit, least, most), SI
+    "bulk_density": ("density", 1.0, 3e4),
+    "particle_density": ("density", 1.0, 3e4),
+    "d10": ("length", 1e-8, 1.0),
+    "d50": ("length", 1e-8, 1.0),
+    "d90": ("length", 1e-8, 1.0),
+    "angle_of_repose": ("angle", 0.01, 1.57),
+    "wall_friction": ("ratio", 0.0, 5.0),
+    "unconfined_yield_strength": ("pressure", 0.0, 1e7),
 }
-_GRAIN_FIELD: Final = {
-    "angle_of_repose": "angle_of_repose_rad", "unconfined_yield_strength": "unconfined_yield_strength_Pa",
-}  # fmt: skip
-_DRIVE: Final = {
+"""Numbers of a granular material."""
+
+_DRIVE_FIELDS: Final = {
     "max_stroke": "length",
     "max_velocity": "velocity",
     "max_acceleration": "acceleration",
     "max_force": "force",
     "moving_mass": "mass",
-    "min_frequency": "frequency",
-    "max_frequency": "frequency",
 }
-_WORDS: Final = ("title", "synonyms", "hazard", "note")
-_TOPICS: Final = ("flammable", "toxic", "corrosive", "irritant", "slippery", "hot", "sticky", "environment", "dust")
-_KINEMATIC_UNITS: Final = {"mm2/s", "mm**2/s", "mm^2/s", "mm²/s", "cst", "st", "m2/s", "m**2/s", "m^2/s", "m²/s", "cm2/s"}
-_NUMBER: Final = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?")
+_TEXTS: Final = {
+    "liquid": ("title", "synonym", "hazard", "note", "flash_point", "vapour_pressure_note", "rheology"),
+    "grain": ("title", "synonym", "hazard", "note"),
+    "drive": ("title", "synonym", "note", "source", "frequency_range"),
+}
+_MANY: Final = ("synonym", "hazard", "note")
+_YES_NO: Final = {"yes": True, "true": True, "no": False, "false": False}
 
 
-class _Rows:
-    """The rows of an entry by property, with the faults that are found while they are read."""
+@dataclass(slots=True)
+class _Fields:
+    """The rows of one entry by field, and the faults of the file."""
 
-    def __init__(self, record: Record, kinds: Mapping[str, str], others: tuple[str, ...], faults: list[Fault]) -> None:
-        self.record, self.kinds, self.faults = record, kinds, faults
-        self.single: dict[str, Row] = {}
-        self.many: dict[str, list[Row]] = {}
-        for row in record.rows:
-            name = row["property"]
-            if name in ("hazard", "note", "synonyms"):
-                self.many.setdefault(name, []).append(row)
-            elif name not in kinds and name not in others and name != "title":
-                known = ", ".join((*kinds, *others, *_WORDS))
-                self.fault(row, "property", f"{shown(name)} is not a property of a {record.kind}; expected {known}")
-            elif name in self.single:
-                self.fault(row, "property", f"{name} of {shown(record.name)} stands on line {self.single[name].line} already")
-            else:
-                self.single[name] = row
+    kind: str
+    name: str
+    faults: Faults
+    origin: str
+    line: int
+    one: dict[str, Row] = field(default_factory=dict)
+    many: dict[str, list[Row]] = field(default_factory=dict)
 
-    def fault(self, row: Row, column: str, reason: str) -> None:
-        self.faults.append(Fault(row.line, column, reason))
+    def texts(self, name: str) -> tuple[str, ...]:
+        return tuple(row.value for row in self.many.get(name, ()))
 
-    def missing(self, name: str) -> None:
-        self.faults.append(Fault(self.record.rows[0].line, "name", f"{shown(self.record.name)} has no row for {name}"))
+    def text(self, name: str, default: str = "") -> str:
+        return self.one[name].value if name in self.one else default
 
-    def words(self, name: str) -> tuple[str, ...]:
-        return tuple(row["text"] for row in self.many.get(name, ()) if row["text"])
-
-    def title(self) -> str:
-        row = self.single.get("title")
-        return row["text"] if row is not None else self.record.name
-
-    def number(self, row: Row, column: str, text: str) -> float:
-        if not _NUMBER.fullmatch(text) or not math.isfinite(float(text)):
-            comma = " (write a decimal point)" if "," in text else ""
-            self.fault(row, column, f"{shown(text)} is not a finite number{comma}")
-            return math.nan
-        return float(text)
-
-    def factor(self, row: Row, kind: str) -> float:
-        unit = row["unit"]
-        known = _KNOWN_FACTORS.get((kind, unit))
-        if known is not None:
-            return known
+    def guarded(self, row: Row, column: str, read: Callable[[str], Any], text: str) -> Any:
+        """Return what `read` makes of the text, or None with the fault noted."""
         try:
-            return parse_quantity(f"1 {unit}", kind, "unit")
+            return read(text)
         except InputError as error:
-            self.fault(row, "unit", str(error).removeprefix("unit: "))
-            return math.nan
+            self.faults.add(row.line, column, str(error))
+            return None
 
-    def scalar(self, name: str, *, least: float = 0.0, most: float = math.inf, above: bool = True) -> float:
-        """Return the SI value of a property that does not depend on temperature."""
-        row = self.single[name]
-        value = self.number(row, "coefficients", row["coefficients"]) * self.factor(row, self.kinds[name])
-        if value < least or value > most or (above and value == least):
-            self.fault(row, "coefficients", f"{row['coefficients']} {row['unit']} is not allowed for {name}")
-        return value
 
-    def fraction(self, row: Row) -> float:
-        text = row["uncertainty"]
-        value = self.number(row, "uncertainty", text[:-1].strip() if text.endswith("%") else text) if text else math.nan
-        value = value / 100.0 if text.endswith("%") else value
-        if not text:
-            self.fault(row, "uncertainty", "empty; expected a relative uncertainty such as 0.05 or 5 %")
-        elif not 0.0 <= value < 10.0 and not math.isnan(value):
-            self.fault(row, "uncertainty", f"{shown(text)} is not allowed; expected 0 to 10")
-        return value
+def build(rows: Sequence[Row], faults: Faults, *, origin: str) -> LiquidEntry | GrainEntry | DriveEntry | None:
+    """Return the entry that rows of one kind and name describe, or None where faults were noted.
 
-    def was_read(self, row: Row) -> bool:
-        if row["read"] not in ("yes", "no", ""):
-            self.fault(row, "read", f"{shown(row['read'])}: expected yes (the source was read) or no (from memory)")
-        return row["read"] == "yes"
+    Parameters
+    ----------
+    rows : sequence of Row
+        At least one.
+    faults : Faults
+        Gets what is wrong.
+    origin : str
+        File that the rows come from.
+    """
+    before = len(faults.found)
+    first = rows[0]
+    fields = _Fields(first.kind, first.name, faults, origin, first.line)
+    properties: Mapping[str, Any] = {"liquid": LIQUID_PROPERTIES, "grain": GRAIN_FIELDS, "drive": _DRIVE_FIELDS}[first.kind]
+    allowed = (*properties, *_TEXTS[first.kind])
+    for row in rows:
+        if row.field not in allowed:
+            faults.add(row.line, "field", f"{shown(row.field)} is not a field of a {row.kind}; expected {', '.join(allowed)}")
+        elif not row.value:
+            faults.add(row.line, "value", f"the {row.field} of {shown(row.name)} is empty")
+        elif row.field in _MANY:
+            fields.many.setdefault(row.field, []).append(row)
+        elif row.field in fields.one:
+            faults.add(row.line, "field", f"{row.field} of {shown(row.name)} is there twice (first in line {fields.one[row.field].line})")
+        else:
+            fields.one[row.field] = row
+    for row in fields.many.get("hazard", ()):
+        topic, colon, sentence = row.value.partition(": ")
+        if topic not in HAZARD_TOPICS or not colon or not sentence.strip():
+            faults.add(row.line, "value", f"{shown(row.value)} is not 'topic: sentence' with a topic of {', '.join(HAZARD_TOPICS)}")
+    made = {"liquid": _liquid, "grain": _grain, "drive": _drive}[first.kind](fields)
+    return made if len(faults.found) == before else None
 
-    def source(self, row: Row) -> str:
-        if not row["text"]:
-            self.fault(row, "text", f"{row['property']} has no source; name it, or write 'measured here'")
-        return row["text"]
 
-    def kelvin(self, row: Row, column: str) -> float:
-        if not row[column]:
-            self.fault(row, column, "empty; expected the end of the range where the law holds")
-            return math.nan
-        return to_kelvin(self.number(row, column, row[column]), row["unit of " + column])
+def _liquid(fields: _Fields) -> LiquidEntry | None:
+    density = _property(fields, "density", None)
+    viscosity = _property(fields, "viscosity", density)
+    tension = _property(fields, "surface_tension", None)
+    pressure = _property(fields, "vapour_pressure", None)
+    note = fields.text("vapour_pressure_note")
+    if "vapour_pressure" not in fields.one and not note:
+        fields.faults.add(fields.line, "field", f"{shown(fields.name)} has neither vapour_pressure nor vapour_pressure_note")
+    flash: float | None = None
+    if "flash_point" in fields.one:
+        row = fields.one["flash_point"]
+        flash = fields.guarded(row, "value", temperature_of, f"{row.value} {row.unit}")
+    rheology = _rheology(fields)
+    if density is None or viscosity is None or tension is None:
+        return None
+    entry = LiquidEntry(
+        name=fields.name, title=fields.text("title", fields.name), synonyms=fields.texts("synonym"), density=density,
+        viscosity=viscosity, surface_tension=tension, vapour_pressure=pressure, vapour_pressure_note=note, flash_point_K=flash,
+        hazards=fields.texts("hazard"), notes=fields.texts("note"), rheology=rheology, origin=fields.origin,
+    )  # fmt: skip
+    low, high = entry.range_K
+    if not low < high:
+        fields.faults.add(fields.line, "from", f"the ranges of {shown(fields.name)} do not overlap")
+        return None
+    return entry
 
-    def coefficients(self, row: Row) -> dict[str, float]:
-        name, text = row["law"] or "constant", row["coefficients"]
-        law = LAWS.get(name)
-        if law is None:
-            self.fault(row, "law", f"{shown(name)} is not a law; expected {', '.join(LAWS)}")
-            return {}
-        if name == "constant" and "=" not in text:
-            return {"c": self.number(row, "coefficients", text)}
-        pairs: dict[str, float] = {}
-        for part in filter(None, (p.strip() for p in text.split(";"))):
-            key, _, value = (p.strip() for p in part.partition("=" if law.required else ":"))
-            if law.required and key not in law.required and key not in law.optional:
-                known = ", ".join((*law.required, *law.optional))
-                self.fault(row, "coefficients", f"{shown(part)} is not a coefficient of {name}; expected {known}")
-            elif key in pairs:
-                self.fault(row, "coefficients", f"{shown(key)} stands twice")
-            else:
-                if not law.required:
-                    self.number(row, "coefficients", key)
-                pairs[key] = self.number(row, "coefficients", value)
-        lacking = [key for key in law.required if key not in pairs]
-        if lacking:
-            self.fault(row, "coefficients", f"{', '.join(lacking)} missing for {name}: {law.formula}")
-        if not law.required and len(pairs) < 2:
-            self.fault(row, "coefficients", f"{shown(text)}: expected at least two points such as 20:1.4; 40:0.28")
-        return pairs
 
-    def property(self, name: str, density: Property | None) -> Property | None:
-        """Return a property over temperature, checked at the ends and between; None where a fault was found."""
-        row, before = self.single[name], len(self.faults)
-        kind = self.kinds[name]
-        if kind == "viscosity" and _is_kinematic(row["unit"]):
-            kind = "kinematic viscosity"
-        coefficients = self.coefficients(row)
-        factor = self.factor(row, kind)
-        low, high = self.kelvin(row, "t_min"), self.kelvin(row, "t_max")
-        if low > high or low < 0.0:
-            self.fault(row, "t_min", f"{row['t_min']} to {row['t_max']} is not a range of temperature")
-        made = Property(
-            name=name, law=row["law"] or "constant", coefficients=coefficients, range_K=(low, high),
-            relative_uncertainty=self.fraction(row), source=self.source(row), source_read=self.was_read(row), factor=factor,
-            unit=row["unit"], density=density if kind == "kinematic viscosity" else None,
-        )  # fmt: skip
-        return made if len(self.faults) == before else None
+def _property(fields: _Fields, name: str, density: Property | None) -> Property | None:
+    """Return a property, None where it is not stated or faulty; only the vapour pressure may be left out."""
+    row = fields.one.get(name)
+    if row is None:
+        if name != "vapour_pressure":
+            fields.faults.add(fields.line, "field", f"the {name} of {shown(fields.name)} is missing")
+        return None
+    before = len(fields.faults.found)
+    law = row.law or "constant"
+    coefficients: dict[str, float] = {}
+    if law not in LAWS:
+        fields.faults.add(row.line, "law", f"{shown(law)} is not a law; expected {', '.join(LAWS)}")
+    else:
+        coefficients = _coefficients(fields, row, law)
+    kinds = LIQUID_PROPERTIES[name][0]
+    kinematic = len(kinds) > 1 and _is_kinematic(row.unit)
+    kind = kinds[1] if kinematic else kinds[0]
+    if law == "walther" and not kinematic:
+        fields.faults.add(row.line, "law", "walther gives a kinematic viscosity; expected the unit mm**2/s")
+    factor = fields.guarded(row, "unit", lambda unit: factor_of(unit, kind), row.unit)
+    ends = [_temperature(fields, row, column, text) for column, text in (("from", row.low), ("to", row.high))]
+    uncertainty, read = _uncertainty(fields, row), _read(fields, row)
+    if not row.source:
+        fields.faults.add(row.line, "source", f"the {name} of {shown(fields.name)} has no source; write 'own measurement' or 'unknown'")
+    if len(fields.faults.found) > before:
+        return None
+    low, high = ends
+    if law.startswith("tabulated"):
+        points = sorted(float(t) + 273.15 for t in coefficients)
+        if low < points[0] - 1e-6 or high > points[-1] + 1e-6:
+            fields.faults.add(row.line, "from", "the range goes beyond the points; nothing is extrapolated")
+    if kinematic:
+        if density is None:
+            fields.faults.add(row.line, "unit", "a kinematic viscosity needs the density, which is missing or faulty")
+            return None
+        low, high = max(low, density.range_K[0]), min(high, density.range_K[1])
+    if not low < high:
+        fields.faults.add(row.line, "from", f"the range {row.low} to {row.high} is empty; the first must be the smaller")
+        return None
+    made = Property(
+        name=name, law=law, coefficients=coefficients, range_K=(low, high), relative_uncertainty=uncertainty, source=row.source,
+        source_read=read, factor=factor, unit=row.unit, density=density if kinematic else None,
+    )  # fmt: skip
+    if fields.origin != "built in" and len(fields.faults.found) == before:
+        _look_at_values(fields, row, made)
+    return made
 
 
 def _is_kinematic(unit: str) -> bool:
-    return unit.replace(" ", "").lower() in _KINEMATIC_UNITS
+    if "/" not in unit and "St" not in unit:
+        return False
+    try:
+        factor_of(unit, "kinematic viscosity")
+    except InputError:
+        return False
+    return True
 
 
-def to_kelvin(value: float, unit: str) -> float:
-    """Return a temperature in K."""
-    if unit == "degF":
-        return (value - 32.0) / 1.8 - ABSOLUTE_ZERO_CELSIUS
-    return value - ABSOLUTE_ZERO_CELSIUS if unit == "degC" else value
+def _look_at_values(fields: _Fields, row: Row, made: Property) -> None:
+    """Note a value that is not finite or out of bounds anywhere in the range."""
+    _, least, most = LIQUID_PROPERTIES[made.name]
+    kelvin = np.linspace(*made.range_K, 65)
+    with np.errstate(all="ignore"):
+        values = np.asarray(made.value(kelvin))
+    bad = ~(np.isfinite(values) & (values >= least) & (values <= most))
+    if np.any(bad):
+        i = int(np.argmax(bad))
+        fields.faults.add(
+            row.line, "value",
+            f"the {made.name} would be {values[i]:.3g} at {kelvin[i] - 273.15:.4g} degC; expected {least:g} to {most:g} (SI)",
+        )  # fmt: skip
 
 
-def build_liquid(record: Record, faults: list[Fault]) -> LiquidEntry | None:
-    """Return the liquid of a record, or None with its faults appended."""
-    before = len(faults)
-    rows = _Rows(record, _LIQUID, ("flash_point", "rheology"), faults)
-    found: dict[str, Property | None] = {}
-    pressure: Property | None = None
-    note = ""
-    for name in ("density", "viscosity", "surface_tension"):
-        if name in rows.single:
-            found[name] = rows.property(name, found.get("density"))
-        else:
-            rows.missing(name)
-    row = rows.single.get("vapour_pressure")
-    if row is None:
-        rows.missing("vapour_pressure (law 'negligible' where it is)")
-    elif row["law"] == "negligible":
-        note = row["text"]
-    else:
-        pressure, note = rows.property("vapour_pressure", None), ""
-    flash = rows.single.get("flash_point")
-    flash_kelvin = None
-    if flash is not None:
-        unit = flash["unit"]
-        if unit not in ("degC", "degF", "K"):
-            rows.fault(flash, "unit", f"{shown(unit)}: expected degC, degF or K")
-        flash_kelvin = to_kelvin(rows.number(flash, "coefficients", flash["coefficients"]), unit)
-    hazards = rows.words("hazard")
-    for hazard_row in rows.many.get("hazard", ()):
-        topic, colon, _ = hazard_row["text"].partition(": ")
-        if not colon or topic not in _TOPICS:
-            said = shown(hazard_row["text"])
-            rows.fault(hazard_row, "text", f"{said}: expected 'topic: sentence' with a topic of {', '.join(_TOPICS)}")
-    rheology = _rheology(rows)
-    if len(faults) > before:
-        return None
-    density, viscosity, tension = found["density"], found["viscosity"], found["surface_tension"]
-    assert density is not None and viscosity is not None and tension is not None
-    return LiquidEntry(
-        name=record.name, title=rows.title(), synonyms=record.synonyms, density=density, viscosity=viscosity,
-        surface_tension=tension, vapour_pressure=pressure, vapour_pressure_note=note, flash_point_K=flash_kelvin,
-        hazards=hazards, notes=rows.words("note"), rheology=rheology, origin=record.origin,
-    )  # fmt: skip
-
-
-def _rheology(rows: _Rows) -> Mapping[str, Any] | None:
-    row = rows.single.get("rheology")
-    if row is None:
-        return None
-    values: dict[str, Any] = {"model": row["law"]}
-    for part in filter(None, (p.strip() for p in row["coefficients"].split(";"))):
-        key, _, value = (p.strip() for p in part.partition("="))
-        values[key] = rows.number(row, "coefficients", value)
-    values["source"] = row["text"]
-    return values
-
-
-def build_grain(record: Record, faults: list[Fault]) -> GrainEntry | None:
-    """Return the granular material of a record, or None with its faults appended."""
-    before = len(faults)
-    rows = _Rows(record, _GRAIN, (), faults)
-    values: dict[str, float | None] = {}
-    sources: dict[str, str] = {}
-    was_read: dict[str, bool] = {}
-    uncertainty: dict[str, float] = {}
-    for name in _GRAIN:
-        row = rows.single.get(name)
-        if row is None:
-            rows.missing(name)
+def _coefficients(fields: _Fields, row: Row, name: str) -> dict[str, float]:
+    law = LAWS[name]
+    tabulated = name.startswith("tabulated")
+    if name == "constant" and "=" not in row.value:
+        value = fields.guarded(row, "value", number_of, row.value)
+        return {} if value is None else {"c": value}
+    found: dict[str, float] = {}
+    for part in row.value.split(";"):
+        key, sign, text = (piece.strip() for piece in part.partition(":" if tabulated else "="))
+        if not sign:
+            form = "20:1.41; 40:0.28" if tabulated else "A=1.5; B=800"
+            fields.faults.add(row.line, "value", f"{shown(part.strip())} is not of the form {form}")
             continue
-        field = _GRAIN_FIELD.get(name, name)
-        free = name == "unconfined_yield_strength" and row["law"] == "free-flowing"
-        values[field] = None if free else rows.scalar(name)
-        sources[field], was_read[field] = rows.source(row), rows.was_read(row)
-        if not free:
-            uncertainty[field] = rows.fraction(row)
-    if len(faults) > before:
+        if tabulated:
+            point = fields.guarded(row, "value", number_of, key)
+            key = "" if point is None else repr(point)
+        elif key not in law.required and key not in law.optional:
+            expected = ", ".join((*law.required, *law.optional))
+            fields.faults.add(row.line, "value", f"{shown(key)} is not a coefficient of {name}; expected {expected}")
+            continue
+        if key in found:
+            fields.faults.add(row.line, "value", f"{shown(key)} is there twice")
+        value = fields.guarded(row, "value", number_of, text)
+        if value is not None and key:
+            found[key] = value
+    missing = [key for key in law.required if key not in found]
+    if missing and not tabulated:
+        fields.faults.add(row.line, "value", f"the law {name} needs {', '.join(missing)} as well")
+    if tabulated and len(found) < 2:
+        fields.faults.add(row.line, "value", "a tabulated law needs two points or more")
+    if name == "tabulated_log" and any(value <= 0.0 for value in found.values()):
+        fields.faults.add(row.line, "value", "tabulated_log needs values above 0")
+    return found
+
+
+def _temperature(fields: _Fields, row: Row, column: str, text: str) -> Any:
+    if not text:
+        fields.faults.add(row.line, column, f"the range of {row.field} is missing; expected a temperature such as 20 degC")
         return None
-    d10, d50, d90 = values["d10"], values["d50"], values["d90"]
-    assert d10 is not None and d50 is not None and d90 is not None
-    if not d10 <= d50 <= d90:
-        rows.fault(rows.single["d10"], "coefficients", "the diameters must rise: d10, d50, d90")
+    return fields.guarded(row, column, temperature_of, text)
+
+
+def _uncertainty(fields: _Fields, row: Row) -> float:
+    if not row.uncertainty:
+        fields.faults.add(row.line, "uncertainty", f"missing for {row.field}; expected one such as 2 %")
+        return math.nan
+    value = fields.guarded(row, "uncertainty", ratio_of, row.uncertainty)
+    if value is not None and not 0.0 <= value <= 2.0:
+        fields.faults.add(row.line, "uncertainty", f"{shown(row.uncertainty)} is not between 0 and 200 %")
+    return math.nan if value is None else float(value)
+
+
+def _read(fields: _Fields, row: Row) -> bool:
+    if row.read.lower() not in _YES_NO:
+        fields.faults.add(row.line, "read", f"{shown(row.read)} is neither yes nor no: was the source read?")
+    return _YES_NO.get(row.read.lower(), False)
+
+
+def _rheology(fields: _Fields) -> dict[str, Any] | None:
+    row = fields.one.get("rheology")
+    if row is None:
         return None
+    if row.law not in RHEOLOGY_MODELS:
+        fields.faults.add(row.line, "law", f"{shown(row.law)} is not a model; expected {', '.join(RHEOLOGY_MODELS)}")
+        return None
+    expected = RHEOLOGY_MODELS[row.law]
+    made: dict[str, Any] = {"model": row.law}
+    for part in row.value.split(";"):
+        key, _, text = (piece.strip() for piece in part.partition("="))
+        if key not in expected or key in made:
+            fields.faults.add(row.line, "value", f"{shown(part.strip())} does not fit; {row.law} takes {', '.join(expected)} once each")
+            continue
+        value = fields.guarded(row, "value", number_of, text)
+        if value is not None and value < 0.0:
+            fields.faults.add(row.line, "value", f"{key} is {value:g}; expected 0 or more")
+        made[key] = value
+    missing = [key for key in expected if key not in made]
+    if missing:
+        fields.faults.add(row.line, "value", f"the model {row.law} needs {', '.join(missing)} as well")
+    made.update(source=row.source, source_read=_read(fields, row), relative_uncertainty=_uncertainty(fields, row))
+    return made
+
+
+def _number(fields: _Fields, row: Row, kind: str, bounds: tuple[float, float]) -> float | None:
+    value = fields.guarded(row, "value", number_of, row.value)
+    factor = fields.guarded(row, "unit", lambda unit: factor_of(unit, kind), row.unit)
+    if value is None or factor is None:
+        return None
+    result = float(value) * float(factor)
+    if not bounds[0] <= result <= bounds[1]:
+        fields.faults.add(row.line, "value", f"{row.value} {row.unit} is not between {bounds[0]:g} and {bounds[1]:g} (SI)")
+        return None
+    return result
+
+
+def _grain(fields: _Fields) -> GrainEntry | None:
+    numbers: dict[str, float | None] = {}
+    for name, (kind, least, most) in GRAIN_FIELDS.items():
+        row = fields.one.get(name)
+        if row is None:
+            fields.faults.add(fields.line, "field", f"the {name} of {shown(fields.name)} is missing")
+        elif name == "unconfined_yield_strength" and row.value.lower() == "free-flowing":
+            numbers[name] = None
+        else:
+            numbers[name] = _number(fields, row, kind, (least, most))
+    stated = {name: row for name, row in fields.one.items() if name in GRAIN_FIELDS}
+    for row in stated.values():
+        if not row.source:
+            fields.faults.add(row.line, "source", f"the {row.field} has no source; write 'own measurement' or 'unknown'")
+    read = {name: _read(fields, row) for name, row in stated.items()}
+    uncertainty = {name: _uncertainty(fields, row) for name, row in stated.items() if numbers.get(name) is not None}
+    n = {name: value for name, value in numbers.items() if value is not None}
+    if len(n) + ("unconfined_yield_strength" not in n) < len(GRAIN_FIELDS):
+        return None
+    if not n["d10"] <= n["d50"] <= n["d90"]:
+        fields.faults.add(fields.line, "value", f"d10, d50, d90 of {shown(fields.name)} do not rise")
+    if not n["bulk_density"] < n["particle_density"]:
+        fields.faults.add(fields.line, "value", f"the bulk density of {shown(fields.name)} is not below the particle density")
     return GrainEntry(
-        name=record.name, title=rows.title(), synonyms=record.synonyms, sources=sources, source_read=was_read,
-        uncertainty=uncertainty, hazards=rows.words("hazard"), notes=rows.words("note"), origin=record.origin,
-        **values,  # type: ignore[arg-type]
+        name=fields.name, title=fields.text("title", fields.name), synonyms=fields.texts("synonym"),
+        bulk_density=n["bulk_density"], particle_density=n["particle_density"], d10=n["d10"], d50=n["d50"], d90=n["d90"],
+        angle_of_repose_rad=n["angle_of_repose"], wall_friction=n["wall_friction"],
+        unconfined_yield_strength_Pa=n.get("unconfined_yield_strength"),
+        sources={name: row.source for name, row in stated.items()}, source_read=read, uncertainty=uncertainty,
+        hazards=fields.texts("hazard"), notes=fields.texts("note"), origin=fields.origin,
     )  # fmt: skip
 
 
-def build_drive(record: Record, faults: list[Fault]) -> DriveEntry | None:
-    """Return the class of drives of a record, or None with its faults appended."""
-    before = len(faults)
-    rows = _Rows(record, _DRIVE, (), faults)
-    values = {name: rows.scalar(name, above=name != "moving_mass") for name in _DRIVE if name in rows.single}
-    ends = [values.pop(name, None) for name in ("min_frequency", "max_frequency")]
-    if (ends[0] is None) != (ends[1] is None):
-        rows.missing("min_frequency" if ends[0] is None else "max_frequency")
-    frequencies = (ends[0], ends[1]) if ends[0] is not None and ends[1] is not None else None
-    if "max_force" in values and "moving_mass" not in values:
-        rows.missing("moving_mass, which goes with max_force")
-    if not values and frequencies is None:
-        rows.missing("any limit")
-    if len(faults) > before:
-        return None
-    stated = [row["text"] for row in rows.single.values() if row["property"] in _DRIVE and row["text"]]
+def _drive(fields: _Fields) -> DriveEntry | None:
+    numbers: dict[str, float | None] = {}
+    for name, kind in _DRIVE_FIELDS.items():
+        row = fields.one.get(name)
+        numbers[name] = _number(fields, row, kind, (0.0 if name == "moving_mass" else 1e-12, 1e9)) if row else None
+    if numbers["max_force"] is not None and numbers["moving_mass"] is None:
+        fields.faults.add(fields.line, "field", f"{shown(fields.name)} has max_force without moving_mass")
+    frequencies: tuple[float, float] | None = None
+    row = fields.one.get("frequency_range")
+    if row is not None:
+        low, colon, high = row.value.partition(":")
+        ends = [fields.guarded(row, "value", number_of, end) for end in (low, high)] if colon else [None, None]
+        factor = fields.guarded(row, "unit", lambda unit: factor_of(unit, "frequency"), row.unit)
+        if ends[0] is None or ends[1] is None or factor is None or not 0.0 < ends[0] < ends[1]:
+            fields.faults.add(row.line, "value", f"{shown(row.value)} is not a range such as 5:60")
+        else:
+            frequencies = (ends[0] * factor, ends[1] * factor)
+    if frequencies is None and all(value is None for value in numbers.values()):
+        fields.faults.add(fields.line, "field", f"{shown(fields.name)} states no limit at all")
     return DriveEntry(
-        name=record.name, title=rows.title(), synonyms=record.synonyms, frequency_range=frequencies,
-        note=" ".join(rows.words("note")), source=stated[0] if stated else "common practice", origin=record.origin,
-        **{field: values.get(field) for field in
-           ("max_stroke", "max_velocity", "max_acceleration", "max_force", "moving_mass")},
+        name=fields.name, title=fields.text("title", fields.name), synonyms=fields.texts("synonym"),
+        max_stroke=numbers["max_stroke"], max_velocity=numbers["max_velocity"], max_acceleration=numbers["max_acceleration"],
+        max_force=numbers["max_force"], moving_mass=numbers["moving_mass"], frequency_range=frequencies,
+        note=" ".join(fields.texts("note")), source=fields.text("source", "common practice"), origin=fields.origin,
     )  # fmt: skip

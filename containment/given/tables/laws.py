@@ -121,8 +121,8 @@ def shape_preserving(x: Array, y: Array, at: Any) -> Array:
 
     Examples
     --------
-    >>> shape_preserving(np.array([0.0, 1.0, 2.0]), np.array([0.0, 1.0, 4.0]), 1.0)
-    array(1.)
+    >>> float(shape_preserving(np.array([0.0, 1.0, 2.0]), np.array([0.0, 1.0, 4.0]), 1.0))
+    1.0
     """
     h, slope = np.diff(x), np.diff(y) / np.diff(x)
     d = np.zeros_like(y)

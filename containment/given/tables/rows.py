@@ -1,170 +1,177 @@
-"""Rows of a property table: one row a property, many rows an entry.
+"""Rows of a table file, CSV or TOML: what is written, not yet what it means.
 
-Columns: kind, name, property, law, coefficients, unit, t_min, t_max, uncertainty, read, text; the heads of t_min and t_max
-carry their unit in brackets, such as ``t_min [degC]``. Lines that start with # are comments.
+Both forms say the same: an entry of a kind (liquid, grain, drive) has fields, and a field has a law or a value, a unit, a
+range of temperature, an uncertainty, a source, and whether that source was read.
 """
 
 import csv
+import io
 import re
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterator
 from dataclasses import dataclass
-from typing import Final
+from pathlib import Path
+from typing import Any, Final
 
 from containment.errors import InputError
+from containment.given.tables.faults import Faults, shown
 
-__all__ = ["COLUMNS", "Fault", "Record", "Row", "names_match", "read_rows", "records_of", "shown"]
+__all__ = ["COLUMNS", "KINDS_OF_ENTRY", "Row", "read_rows"]
 
-COLUMNS: Final = (
-    "kind", "name", "property", "law", "coefficients", "unit", "t_min", "t_max", "uncertainty", "read", "text",
-)  # fmt: skip
-_REQUIRED: Final = ("kind", "name", "property", "coefficients", "text")
-_WITH_UNIT: Final = ("t_min", "t_max")
-_TEMPERATURE_UNITS: Final = ("degC", "degF", "K")
-_LONGEST_CELL: Final = 2000
-_HEAD: Final = re.compile(r"\s*([a-z_]+)\s*(?:\[\s*([^\]]*?)\s*\])?\s*")
-_CONTROL: Final = re.compile(r"[\x00-\x1f\x7f-\x9f\u200b-\u200f\u2028-\u202e\u2060-\u2069\ufeff]")
+KINDS_OF_ENTRY: Final = ("liquid", "grain", "drive")
+COLUMNS: Final = ("kind", "name", "field", "law", "value", "unit", "from", "to", "uncertainty", "source", "read")
+_NEEDED: Final = ("kind", "name", "field", "value")
+_WITH_UNIT: Final = ("from", "to", "uncertainty")
 
-
-@dataclass(frozen=True, slots=True)
-class Fault:
-    """A fault of a table file: line (from 1), column, reason."""
-
-    line: int
-    column: str
-    reason: str
-
-    def __str__(self) -> str:
-        """Return the fault in one line."""
-        return f"line {self.line}, {self.column}: {self.reason}"
+_MOST_BYTES: Final = 2_000_000
+_LONGEST_CELL: Final = 2_000
+_MOST_ROWS: Final = 20_000
+_MARKUP: Final = re.compile(r"<[A-Za-z/!?]|&#|\[/?[a-z@#][^\]]*\]", re.IGNORECASE)
+_FORMULA: Final = re.compile(r"\s*[=+@|]|\s*-(?!\s*\.?\d)")
+_HEADER: Final = re.compile(r"\s*([A-Za-z_]+)\s*(?:\[([^\]]*)\])?\s*")
+_NUMBER: Final = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?")
 
 
 @dataclass(frozen=True, slots=True)
 class Row:
-    """One row: its line and its cells by column; the unit of a temperature column under ``unit of t_min``."""
+    """A field of an entry, as text; `low`, `high` and `uncertainty` carry their unit."""
 
     line: int
-    cells: Mapping[str, str]
-
-    def __getitem__(self, column: str) -> str:
-        """Return a cell, empty where the table has no such column."""
-        return self.cells.get(column, "")
-
-
-@dataclass(slots=True)
-class Record:
-    """The rows of one entry."""
-
     kind: str
     name: str
-    rows: list[Row]
-    origin: str
-
-    @property
-    def synonyms(self) -> tuple[str, ...]:
-        """Other names of the entry."""
-        words = [word.strip() for row in self.rows if row["property"] == "synonyms" for word in row["text"].split(";")]
-        return tuple(word for word in words if word)
-
-
-def shown(text: str, most: int = 40) -> str:
-    """Return a cell for a message: one printable line of bounded length, in quotes."""
-    clean = "".join(c if c.isprintable() else "?" for c in text[: most + 1])
-    return repr(clean if len(text) <= most else clean[: most - 3] + "...")
+    field: str
+    law: str = ""
+    value: str = ""
+    unit: str = ""
+    low: str = ""
+    high: str = ""
+    uncertainty: str = ""
+    source: str = ""
+    read: str = ""
 
 
-def names_match(name: str) -> str:
-    """Return the form in which names are compared: lower case, blanks, underscores and hyphens alike.
+def read_rows(path: Path, *, trusted: bool = False) -> tuple[list[Row], Faults]:
+    """Return the rows of a table file and the faults found so far.
 
-    Examples
-    --------
-    >>> names_match("  Castor_Oil ") == names_match("castor oil") == names_match("castor-oil")
-    True
-    """
-    return re.sub(r"[\s_-]+", "-", name.strip().lower())
-
-
-def _heads(line: int, cells: list[str], faults: list[Fault]) -> list[tuple[str, str]]:
-    heads: list[tuple[str, str]] = []
-    for cell in cells:
-        match = _HEAD.fullmatch(cell)
-        column, unit = (match.group(1), match.group(2) or "") if match else ("", "")
-        if column not in COLUMNS:
-            faults.append(Fault(line, "header", f"{shown(cell)} is not a column; expected {', '.join(COLUMNS)}"))
-        elif column in [head for head, _ in heads]:
-            faults.append(Fault(line, "header", f"{shown(column)} stands twice; expected each column once"))
-        elif column in _WITH_UNIT and unit not in _TEMPERATURE_UNITS:
-            faults.append(Fault(line, "header", f"{shown(cell)} needs its unit, such as {column} [degC]"))
-        elif column not in _WITH_UNIT and unit:
-            faults.append(Fault(line, "header", f"{shown(cell)}: units of values stand in the column 'unit'"))
-        heads.append((column, unit))
-    present = [head for head, _ in heads]
-    for column in _REQUIRED:
-        if column not in present:
-            faults.append(Fault(line, "header", f"the column {column!r} is missing"))
-    return heads
-
-
-def read_rows(lines: Iterable[str]) -> tuple[list[Row], list[Fault]]:
-    """Return the rows of a table in CSV, and its faults of form."""
-    rows: list[Row] = []
-    faults: list[Fault] = []
-    heads: list[tuple[str, str]] | None = None
-    reader = csv.reader(lines, strict=True)
-    try:
-        for cells in reader:
-            line = reader.line_num
-            if not cells or cells[0].lstrip().startswith("#") or not any(cells):
-                continue
-            if heads is None:
-                heads = _heads(line, cells, faults)
-                if faults:
-                    return rows, faults
-                continue
-            if len(cells) != len(heads):
-                faults.append(Fault(line, "row", f"{len(cells)} cells; expected {len(heads)}, as in the header"))
-                continue
-            found = {}
-            for (column, unit), cell in zip(heads, cells, strict=True):
-                found[column] = cell.strip()
-                if unit:
-                    found["unit of " + column] = unit
-                if len(cell) > _LONGEST_CELL:
-                    faults.append(Fault(line, column, f"{len(cell)} characters; at most {_LONGEST_CELL} are allowed"))
-                elif _CONTROL.search(cell):
-                    faults.append(Fault(line, column, f"{shown(cell)} holds a character that cannot be printed"))
-                elif cell[:1] in ("=", "@"):
-                    faults.append(Fault(line, column, f"{shown(cell)} looks like a spreadsheet formula; write its value"))
-            rows.append(Row(line, found))
-    except csv.Error as error:
-        faults.append(Fault(reader.line_num, "row", f"not readable as CSV ({error})"))
-    if heads is None and not faults:
-        faults.append(Fault(1, "header", f"the table is empty; expected the columns {', '.join(COLUMNS)}"))
-    return rows, faults
-
-
-def records_of(rows: Iterable[Row], origin: str) -> dict[tuple[str, str], Record]:
-    """Return the rows grouped by kind and name, in the order of the file."""
-    records: dict[tuple[str, str], Record] = {}
-    for row in rows:
-        key = (row["kind"], names_match(row["name"]))
-        record = records.get(key)
-        if record is None:
-            records[key] = record = Record(row["kind"], row["name"], [], origin)
-        record.rows.append(row)
-    return records
-
-
-def refuse(faults: Iterable[Fault], origin: str) -> None:
-    """Raise one error that tells all faults.
+    Parameters
+    ----------
+    path : Path
+        A file that ends in ``.csv`` or ``.toml``, UTF-8, at most 2 MB.
+    trusted : bool
+        Leave out the search for hostile cells: only for the tables that come with the package.
 
     Raises
     ------
     InputError
-        Where there is any fault.
+        The file cannot be read as text at all.
     """
-    told = list(faults)
-    if told:
-        most = 20
-        lines = "; ".join(str(fault) for fault in told[:most])
-        more = f"; and {len(told) - most} more" if len(told) > most else ""
-        raise InputError(f"table {origin}: {len(told)} fault{'s' if len(told) > 1 else ''}: {lines}{more}")
+    name = "".join(c if c.isprintable() else "?" for c in path.name)
+    faults = Faults(name)
+    text = _text_of(path, name)
+    if path.suffix.lower() == ".toml":
+        from containment.given.tables.toml_rows import toml_rows
+
+        rows = list(toml_rows(text, faults))
+    elif path.suffix.lower() == ".csv":
+        rows = list(_csv_rows(text, faults))
+    else:
+        raise InputError(f"table {name}: the name ends in {shown(path.suffix)}; expected .csv or .toml")
+    if not trusted:
+        for row in rows:
+            _look_for_hostile_cells(row, faults)
+    return rows, faults
+
+
+def _text_of(path: Path, name: str) -> str:
+    try:
+        if not path.is_file():
+            raise InputError(f"table {name}: not found, or not a file; expected a CSV or TOML file")
+        with path.open("rb") as stream:
+            data = stream.read(_MOST_BYTES + 1)
+    except OSError as error:
+        raise InputError(f"table {name}: cannot be read ({error.strerror}); expected a CSV or TOML file") from error
+    if len(data) > _MOST_BYTES:
+        raise InputError(f"table {name}: larger than {_MOST_BYTES // 1_000_000} MB; expected a table of text")
+    if b"\0" in data:
+        raise InputError(f"table {name}: holds binary data; expected CSV or TOML text in UTF-8")
+    try:
+        return data.decode("utf-8-sig")
+    except UnicodeDecodeError as error:
+        line = data[: error.start].count(b"\n") + 1
+        raise InputError(f"table {name}: line {line} is not UTF-8 text; save the file in UTF-8") from error
+
+
+def _csv_rows(text: str, faults: Faults) -> Iterator[Row]:
+    reader = csv.reader(io.StringIO(text, newline=""), strict=True)
+    try:
+        header = next((cells for cells in reader if cells and not cells[0].startswith("#")), None)
+        if header is None:
+            faults.add(1, "header", f"the file is empty; expected the columns {', '.join(COLUMNS)}")
+            return
+        places = _places(header, reader.line_num, faults)
+        if places is None:
+            return
+        count = len(header)
+        order = [places.get(column, (-1, "")) for column in COLUMNS]
+        for cells in reader:
+            if not cells or cells[0].startswith("#"):
+                continue
+            if len(cells) != count:
+                if any(cell.strip() for cell in cells):
+                    faults.add(
+                        reader.line_num, "row", f"has {len(cells)} cells where the header has {count}; quote commas"
+                    )
+                continue
+            kind, name, field, law, value, unit, low, high, uncertainty, source, read = (
+                _with_unit(cells[place].strip(), unit) if place >= 0 else "" for place, unit in order
+            )
+            yield Row(
+                reader.line_num, kind.lower(), name, field.lower(), law.lower(), value, unit, low, high, uncertainty, source, read
+            )
+            if reader.line_num > _MOST_ROWS:
+                faults.add(reader.line_num, "row", f"more than {_MOST_ROWS} lines; expected a smaller table")
+                return
+    except csv.Error as error:
+        faults.add(reader.line_num, "row", f"is not CSV ({error}); expected commas between cells and quotes in pairs")
+
+
+def _with_unit(cell: str, unit: str) -> str:
+    return f"{cell} {unit}" if unit and cell and _NUMBER.fullmatch(cell) else cell
+
+
+def _places(header: list[str], line: int, faults: Faults) -> dict[str, tuple[int, str]] | None:
+    """Return the place and the unit of each column."""
+    places: dict[str, tuple[int, str]] = {}
+    before = len(faults.found)
+    for i, cell in enumerate(header):
+        match = _HEADER.fullmatch(cell)
+        column = match.group(1).lower() if match else ""
+        if match is None or column not in COLUMNS:
+            faults.add(line, "header", f"{shown(cell)} is not a column; expected {', '.join(COLUMNS)}")
+        elif column in places:
+            faults.add(line, "header", f"{shown(cell)} is there twice; expected each column once")
+        elif match.group(2) and column not in _WITH_UNIT:
+            faults.add(line, "header", f"{shown(cell)} cannot carry a unit; only {', '.join(_WITH_UNIT)} can")
+        else:
+            places[column] = (i, (match.group(2) or "").strip())
+    for column in _NEEDED:
+        if column not in places and len(faults.found) == before:
+            faults.add(line, "header", f"the column {column} is missing; expected {', '.join(COLUMNS)}")
+    return None if len(faults.found) > before else places
+
+
+def _look_for_hostile_cells(row: Row, faults: Faults) -> None:
+    cells: dict[str, Any] = {
+        "kind": row.kind, "name": row.name, "field": row.field, "law": row.law, "value": row.value, "unit": row.unit,
+        "from": row.low, "to": row.high, "uncertainty": row.uncertainty, "source": row.source, "read": row.read,
+    }  # fmt: skip
+    for column, cell in cells.items():
+        if not cell:
+            continue
+        if len(cell) > _LONGEST_CELL:
+            faults.add(row.line, column, f"has {len(cell)} characters; at most {_LONGEST_CELL} are allowed")
+        elif not cell.isprintable():
+            faults.add(row.line, column, f"{shown(cell)} holds control characters; expected plain text")
+        elif _FORMULA.match(cell) and not _NUMBER.match(cell.lstrip()):
+            faults.add(row.line, column, f"{shown(cell)} looks like a spreadsheet formula; expected plain text or a number")
+        elif _MARKUP.search(cell):
+            faults.add(row.line, column, f"{shown(cell)} holds markup; expected plain text")
