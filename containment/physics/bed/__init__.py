@@ -1,0 +1,1 @@
+"""Granular beds: what holds them, what pours, what is thrown. Plain SI functions, one mechanism a module."""
