@@ -322,7 +322,7 @@ def _number(fields: _Fields, row: Row, kind: str, bounds: tuple[float, float]) -
     factor = fields.guarded(row, "unit", lambda unit: factor_of(unit, kind), row.unit)
     if value is None or factor is None:
         return None
-    result = float(value) * float(factor)
+    result = float(f"{float(value) * float(factor):.14g}")  # 0.16 mm is 0.00016 m, not 0.00015999...
     if not bounds[0] <= result <= bounds[1]:
         fields.faults.add(row.line, "value", f"{row.value} {row.unit} is not between {bounds[0]:g} and {bounds[1]:g} (SI)")
         return None

@@ -40,7 +40,7 @@ def name_key(name: str) -> str:
     >>> name_key("ISO-VG 460") == name_key("iso_vg_460")
     True
     """
-    return re.sub(r"[\s_\-%]+", "", name).casefold()
+    return re.sub(r"[\s_\-%,]+", "", name).casefold()
 
 
 @dataclass(slots=True)
