@@ -35,8 +35,10 @@ def yield_strength_from_cohesion(cohesion: Values, *, friction_angle: Values = 0
 
     Examples
     --------
-    >>> float(yield_strength_from_cohesion(100.0)), float(yield_strength_from_cohesion(100.0, friction_angle=0.5235988).round(1))
-    (200.0, 346.4)
+    >>> float(yield_strength_from_cohesion(100.0))
+    200.0
+    >>> float(yield_strength_from_cohesion(100.0, friction_angle=0.5235988).round(1))
+    346.4
     """
     f = np.asarray(friction_angle, np.float64)
     result: Real = 2.0 * np.asarray(cohesion, np.float64) * np.cos(f) / (1.0 - np.sin(f))

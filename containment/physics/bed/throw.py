@@ -1,6 +1,5 @@
 """How high a shaken bed and single grains rise above the vessel that throws them, and how high a bed heaps."""
 
-import math
 from typing import Final
 
 import numpy as np
@@ -31,6 +30,7 @@ def bed_rise(*, acceleration: float, angular_frequency: float, gravity: float) -
 
     Examples
     --------
+    >>> import math
     >>> round(1e3 * bed_rise(acceleration=29.42, angular_frequency=2 * math.pi * 25.0, gravity=9.80665), 2)
     2.83
     """
@@ -102,6 +102,7 @@ def heap_rise(*, width: Values, angle: Values) -> Real:
 
     Examples
     --------
+    >>> import math
     >>> float(heap_rise(width=0.07, angle=math.radians(30.0)).round(4))
     0.0202
     """
