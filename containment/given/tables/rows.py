@@ -15,7 +15,7 @@ from typing import Any, Final
 from containment.errors import InputError
 from containment.given.tables.faults import Faults, shown
 
-__all__ = ["COLUMNS", "KINDS_OF_ENTRY", "Row", "read_rows"]
+__all__ = ["COLUMNS", "KINDS_OF_ENTRY", "Row", "file_text", "read_rows"]
 
 KINDS_OF_ENTRY: Final = ("liquid", "grain", "drive")
 COLUMNS: Final = ("kind", "name", "field", "law", "value", "unit", "from", "to", "uncertainty", "source", "read")
@@ -66,7 +66,7 @@ def read_rows(path: Path, *, trusted: bool = False) -> tuple[list[Row], Faults]:
     """
     name = "".join(c if c.isprintable() else "?" for c in path.name)
     faults = Faults(name)
-    text = _text_of(path, name)
+    text = file_text(path, name)
     if path.suffix.lower() == ".toml":
         from containment.given.tables.toml_rows import toml_rows
 
@@ -81,7 +81,14 @@ def read_rows(path: Path, *, trusted: bool = False) -> tuple[list[Row], Faults]:
     return rows, faults
 
 
-def _text_of(path: Path, name: str) -> str:
+def file_text(path: Path, name: str) -> str:
+    """Return the text of a user's file.
+
+    Raises
+    ------
+    InputError
+        The file cannot be read, is too large, is binary or not UTF-8; `name` names it in the message.
+    """
     try:
         if not path.is_file():
             raise InputError(f"table {name}: not found, or not a file; expected a CSV or TOML file")
