@@ -16,6 +16,7 @@ _PUBLIC: Final = {
     "Slot": "containment.given.vessel",
     "Unbounded": "containment.given.vessel",
     "Motion": "containment.given.motion",
+    "waveform": "containment.given.motion",
     "DriveLimits": "containment.given.drive",
     "Surroundings": "containment.given.surroundings",
     "Verdict": "containment.judgement.verdict",
@@ -30,7 +31,7 @@ if TYPE_CHECKING:
     from containment.errors import ContainmentError, InputError, NotComputableError
     from containment.given.drive import DriveLimits
     from containment.given.liquid import Liquid, liquid
-    from containment.given.motion import Motion
+    from containment.given.motion import Motion, waveform
     from containment.given.surroundings import Surroundings
     from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded
     from containment.judgement.verdict import Verdict, assess, holding_window

@@ -117,6 +117,7 @@ def run(options: argparse.Namespace) -> int:
         amplification=shared.quantity(options, "amplification", "ratio", above=1.0, most=1e6),
         drive=drive,
         surroundings=surroundings_from(options),
+        shape=shared.shape_from(options) if motion is None else None,
         margin_factor=MARGIN_FACTOR if factor is None else factor,
     )
     if options.json:

@@ -5,9 +5,10 @@ from typing import Any
 
 from containment.errors import InputError
 from containment.given.drive import DriveLimits
-from containment.given.motion import Motion
+from containment.given.motion import Motion, waveform
 from containment.given.quantities import parse_quantity
 from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded, Vessel
+from containment.given.waveforms import Waveform
 
 __all__ = [
     "add_drive_limits",
@@ -17,6 +18,7 @@ __all__ = [
     "drive_from",
     "motion_from",
     "quantity",
+    "shape_from",
     "vessel_from",
 ]
 
@@ -45,6 +47,9 @@ def add_vessel(parser: argparse.ArgumentParser, *, depth: str) -> None:
     group.add_argument("--slot", metavar="WIDTH", help="long slot")
     group.add_argument("--unbounded", action="store_true", help="layer without side walls")
     group.add_argument("--depth", metavar="DEPTH", help=f"depth of the {depth}, such as 30mm")
+    group.add_argument(
+        "--contact-line", choices=("sliding", "pinned"), help="of a liquid at the wall; pinned at a brimful rim"
+    )
 
 
 def add_drive_point(parser: argparse.ArgumentParser) -> None:
@@ -55,6 +60,8 @@ def add_drive_point(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--amplitude", metavar="X", help="zero to peak: half the stroke, such as 2.5mm")
     group.add_argument("--stroke", metavar="X", help="peak to peak: twice the amplitude, such as 5mm")
     group.add_argument("--velocity", metavar="V", help="peak, such as 0.8m/s")
+    group.add_argument("--second-harmonic", metavar="RATIO[@PHASE]", help="of the acceleration, such as 0.2@90deg")
+    group.add_argument("--crank-ratio", metavar="R", help="crank radius over rod length of a crank drive")
 
 
 def add_drive_limits(parser: argparse.ArgumentParser) -> None:
@@ -128,7 +135,27 @@ def motion_from(options: argparse.Namespace) -> Motion | None:
     kind = {"amplitude": "length", "stroke": "length"}.get(name, name)
     size = quantity(options, name, kind, above=0.0, most=1e9)
     frequency = quantity(options, "frequency", "frequency", least=0.1, most=1e5)
-    return Motion(frequency=frequency, **{name: size})
+    return Motion(
+        frequency=frequency,
+        second_harmonic=_second_harmonic(options),
+        crank_ratio=quantity(options, "crank_ratio", "ratio", least=0.0, most=0.9),
+        **{name: size},
+    )
+
+
+def shape_from(options: argparse.Namespace) -> Waveform | None:
+    """Return the shape of the motion, or None for a pure sine."""
+    second, crank = _second_harmonic(options), quantity(options, "crank_ratio", "ratio", least=0.0, most=0.9)
+    return None if second is None and crank is None else waveform(second_harmonic=second, crank_ratio=crank)
+
+
+def _second_harmonic(options: argparse.Namespace) -> tuple[float, float] | None:
+    text = options.second_harmonic
+    if text is None:
+        return None
+    ratio, at, phase = text.partition("@")
+    option = "--second-harmonic"
+    return parse_quantity(ratio, "ratio", option), parse_quantity(phase, "angle", option) if at else 0.0
 
 
 def drive_from(options: argparse.Namespace) -> DriveLimits:

@@ -2,14 +2,16 @@
 
 import math
 from dataclasses import dataclass
-from typing import Any
-
-import numpy as np
-import numpy.typing as npt
+from typing import TYPE_CHECKING, Any
 
 from containment.errors import InputError
 from containment.given.motion import FREQUENCY_RANGE
 from containment.given.quantities import si_value
+from containment.given.waveforms import PURE_SINE, Waveform
+
+if TYPE_CHECKING:
+    import numpy as np
+    import numpy.typing as npt
 
 __all__ = ["DriveLimits"]
 
@@ -81,18 +83,22 @@ class DriveLimits:
         """Whether any limit is stated."""
         return any(getattr(self, field) is not None for field in (*_KINDS, "frequency_range"))
 
-    def largest_acceleration(self, frequency: npt.ArrayLike, *, product_mass: float) -> npt.NDArray[np.float64]:
+    def largest_acceleration(
+        self, frequency: "npt.ArrayLike", *, product_mass: float, shape: Waveform = PURE_SINE
+    ) -> "npt.NDArray[np.float64]":
         """Return the largest peak acceleration that the drive reaches at a frequency with the product on it, m/s^2.
 
         Infinite where no limit is stated; 0 outside the frequency range.
         """
+        import numpy as np  # not needed for reading options
+
         f = np.asarray(frequency, dtype=np.float64)
         w = 2.0 * math.pi * f
         most = np.full(f.shape, np.inf)
         if self.max_stroke is not None:
-            most = np.minimum(most, 0.5 * self.max_stroke * w * w)
+            most = np.minimum(most, 0.5 * self.max_stroke * w * w * shape.peak_acceleration / shape.amplitude)
         if self.max_velocity is not None:
-            most = np.minimum(most, self.max_velocity * w)
+            most = np.minimum(most, self.max_velocity * w * shape.peak_acceleration / shape.peak_velocity)
         if self.max_acceleration is not None:
             most = np.minimum(most, self.max_acceleration)
         if self.max_force is not None:

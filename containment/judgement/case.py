@@ -1,5 +1,6 @@
 """One case to be judged: liquid, vessel and growth allowance, turned into the arrays that the physics takes."""
 
+import dataclasses
 import math
 from dataclasses import dataclass
 from functools import cached_property
@@ -14,6 +15,7 @@ from containment.given.liquid import Liquid
 from containment.given.quantities import si_value
 from containment.given.surroundings import Surroundings
 from containment.given.vessel import Annulus, Box, Cylinder, Slot, Vessel
+from containment.given.waveforms import PURE_SINE, Waveform
 from containment.physics import wavenumbers
 from containment.physics.edges import AMPLITUDE_BOUND, Edges, first_roots, hold_edges
 from containment.physics.floquet import static_growth_rate
@@ -122,6 +124,7 @@ class Case:
     vessel: Vessel
     allowance: Allowance
     surroundings: Surroundings = Surroundings()
+    waveform: Waveform = PURE_SINE
     amplitude_bound: float = AMPLITUDE_BOUND
 
     @cached_property
@@ -185,14 +188,45 @@ class Case:
         )  # fmt: skip
 
     def _layer_edges(self, layer: LayerModel, frequency: npt.ArrayLike, growth: float | None) -> Edges:
-        return hold_edges(
-            layer,
-            self.spectrum,
-            frequency,
-            growth=self.allowance.growth if growth is None else growth,
-            amplitude_bound=self.amplitude_bound,
-            capillary_wavenumber=self.capillary_wavenumber,
-            depth=self.vessel.depth,
+        sigma = self.allowance.growth if growth is None else growth
+        if self.vessel.contact_line == "pinned":
+            return self._pinned_edges(frequency, sigma)
+        limits: dict[str, Any] = {
+            "growth": sigma, "amplitude_bound": self.amplitude_bound,
+            "capillary_wavenumber": self.capillary_wavenumber, "depth": self.vessel.depth,
+        }  # fmt: skip
+        if self.waveform is PURE_SINE:
+            return hold_edges(layer, self.spectrum, frequency, **limits)
+        from containment.physics.motion_edges import motion_edges
+
+        edges = motion_edges(layer, self.spectrum, frequency, self.waveform.coupling(), **limits)
+        peak = self.waveform.peak_acceleration
+        return dataclasses.replace(edges, lower=edges.lower * peak, upper=edges.upper * peak)
+
+    @property
+    def rim(self) -> tuple[str, tuple[float, ...]]:
+        """Kind and dimensions (radii, sides; m) of a vessel whose contact line is pinned."""
+        match self.vessel:
+            case Cylinder(diameter=d):
+                return "cylinder", (0.5 * d,)
+            case Annulus(inner_diameter=d, outer_diameter=e):
+                return "annulus", (0.5 * d, 0.5 * e)
+            case Box(width=d, length=e):
+                return "box", (d, e)
+        raise InputError(f"contact line: 'pinned' is not available for a {self.vessel.kind}; expected 'sliding'")
+
+    def _pinned_edges(self, frequency: npt.ArrayLike, growth: float) -> Edges:
+        from containment.physics.pinned import pinned_edges
+
+        kind, dims = self.rim
+        f = np.atleast_1d(np.asarray(frequency, dtype=np.float64))
+        found = pinned_edges(
+            self.layer, kind, dims, f, growth=growth, amplitude_bound=self.amplitude_bound  # type: ignore[arg-type]
+        )
+        none = np.full(len(f), np.nan)
+        cap = self.amplitude_bound * (2.0 * np.pi * f) ** 2
+        return Edges(
+            f, found.lower, np.where(found.upper > cap, np.inf, found.upper), none, none.copy(), found.upper_subharmonic
         )
 
     def lower_edge(self, frequency: float, *, layer: LayerModel) -> float:
@@ -241,6 +275,8 @@ class Case:
     @cached_property
     def unshaken(self) -> Unshaken:
         """What the layer does without shaking: the fastest of all its modes."""
+        if self.vessel.contact_line == "pinned":
+            return self._unshaken_pinned()
         top = self.capillary_wavenumber
         k = self.spectrum.discrete
         k = k[k < top]
@@ -261,5 +297,24 @@ class Case:
             spread /= 8.0
         if not fastest > 0.0:
             return Unshaken(growth_rate=0.0, wavenumber=None, time_to_spill=None)
-        time = math.log(self.vessel.depth / self.allowance.unevenness) / fastest
-        return Unshaken(growth_rate=fastest, wavenumber=at, time_to_spill=time)
+        return Unshaken(growth_rate=fastest, wavenumber=at, time_to_spill=self._time_to_spill(fastest))
+
+    def _time_to_spill(self, rate: float) -> float:
+        return math.log(self.vessel.depth / self.allowance.unevenness) / rate
+
+    def _unshaken_pinned(self) -> Unshaken:
+        """Take orders upwards until one stands at rest: higher orders consist of shorter waves."""
+        from containment.physics.pinned_static import static_pinned_growth
+
+        kind, dims = self.rim
+        fastest = 0.0
+        for order in range(4 if kind == "box" else 200):
+            rates = static_pinned_growth(
+                self.layer, kind, dims, order, precision=1e-2 if kind == "box" else 1e-10  # type: ignore[arg-type]
+            )
+            if not len(rates) and order > 1 and kind != "box":
+                break
+            fastest = max(fastest, float(rates.max(initial=0.0)))
+        if fastest == 0.0:
+            return Unshaken(growth_rate=0.0, wavenumber=None, time_to_spill=None)
+        return Unshaken(growth_rate=fastest, wavenumber=None, time_to_spill=self._time_to_spill(fastest))

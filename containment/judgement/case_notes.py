@@ -5,6 +5,7 @@ import math
 import numpy as np
 
 from containment.given.drive import DriveLimits
+from containment.given.waveforms import PURE_SINE
 from containment.judgement.case import Case
 from containment.judgement.cautions import machine_cautions, product_cautions, trial_cautions
 from containment.judgement.companions import gas_caution
@@ -62,9 +63,9 @@ def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
     bear = case.allowance
     lines = [
         "linear theory: small slopes; a surface already far out of level, or splashed, may fall inside the window",
-        f"Newtonian liquid of one temperature, {_surface_text(case)}, no bubbles; rigid vessel moving as a vertical sine",
-        "contact line free to slide at 90 degrees; the small waves that the meniscus sends out are left out; the drag of "
-        "the side walls counts against the lower edge and is left out of the upper one",
+        f"Newtonian liquid of one temperature, {_surface_text(case)}, no bubbles; rigid vessel moving vertically "
+        + ("as a sine" if case.waveform is PURE_SINE else "with the stated harmonics; accelerations are its peaks"),
+        _wall_text(case),
         f"amplitudes up to {1e3 * case.amplitude_bound:g} mm (zero to peak) are searched",
         f"unevenness at the start {1e3 * bear.unevenness:.3g} mm",
     ]
@@ -99,3 +100,15 @@ def _surface_text(case: Case) -> str:
     if around.film_modulus is not None:
         return f"surface film of {1e3 * around.film_modulus:.3g} mN/m"
     return "surface covered by a skin" if around.surface == "covered" else "clean surface"
+
+
+def _wall_text(case: Case) -> str:
+    if case.vessel.contact_line == "pinned":
+        return (
+            "contact line held at the rim of a brimful vessel; drag of the side walls, a skin and tilt are not judged for it; "
+            "error bounds of its edges are estimates"
+        )
+    text = "contact line free to slide at 90 degrees; the small waves that the meniscus sends out are left out; "
+    if case.waveform is not PURE_SINE:
+        return text + "drag of the side walls, a skin and tilt are not judged for this motion"
+    return text + "the drag of the side walls counts against the lower edge and is left out of the upper one"

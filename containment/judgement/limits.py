@@ -5,6 +5,7 @@ from typing import Final
 
 from containment.constants import STANDARD_ATMOSPHERE, STANDARD_GRAVITY
 from containment.given.drive import DriveLimits
+from containment.given.waveforms import PURE_SINE, Waveform
 from containment.judgement.findings import Limit
 
 __all__ = ["DATA_SHEET", "drive_limits", "pull_off_acceleration", "pull_off_limit"]
@@ -54,14 +55,20 @@ def pull_off_limit(
 
 
 def drive_limits(
-    drive: DriveLimits, *, frequency: float, acceleration: float, product_mass: float | None
+    drive: DriveLimits,
+    *,
+    frequency: float,
+    acceleration: float,
+    product_mass: float | None,
+    shape: Waveform = PURE_SINE,
 ) -> list[Limit]:
-    """Return the drive's limits at a drive point (Hz, peak m/s^2) with the product on it (kg)."""
+    """Return the drive's limits at a drive point (Hz, peak m/s^2 of the whole motion) with the product on it (kg)."""
     w = 2.0 * math.pi * frequency
     mass = (drive.moving_mass or 0.0) + (product_mass or 0.0)
+    level = acceleration / shape.peak_acceleration
     rows = (
-        ("stroke of the drive (peak to peak)", 2.0 * acceleration / (w * w), drive.max_stroke, "m"),
-        ("velocity of the drive (peak)", acceleration / w, drive.max_velocity, "m/s"),
+        ("stroke of the drive (peak to peak)", 2.0 * shape.amplitude * level / (w * w), drive.max_stroke, "m"),
+        ("velocity of the drive (peak)", shape.peak_velocity * level / w, drive.max_velocity, "m/s"),
         ("acceleration of the drive (peak)", acceleration, drive.max_acceleration, "m/s^2"),
         ("force of the drive (peak)", mass * acceleration, drive.max_force, "N"),
     )

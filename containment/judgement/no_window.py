@@ -42,8 +42,8 @@ def why_no_window(case: Case, window: HoldingWindow, drive: DriveLimits) -> Hold
         ends = ["the drive"] if drive.stated else []
         what = " or ".join([*ends, "pull-off from the base", f"the amplitude searched ({1e3 * case.amplitude_bound:g} mm)"])
         reason = (
-            f"{what} ends below what holds: about {least / STANDARD_GRAVITY:.3g} g_n at {f:.3g} Hz ({stroke:.3g} mm peak to peak) "
-            "is needed"
+            f"{what} ends below what holds: about {least / STANDARD_GRAVITY:.3g} g_n at {f:.3g} Hz "
+            f"({stroke:.3g} mm peak to peak) is needed"
         )
     else:
         reason = "waves break up the surface before it is held, at every frequency; " + _what_would_open(case, window)
@@ -62,12 +62,12 @@ def _what_would_open(case: Case, window: HoldingWindow) -> str:
         )
         if viscosity * factor > 1e3:
             break
-        if _opens(Case(thicker, case.vessel, case.allowance, case.surroundings), f, most):
+        if _opens(dataclasses.replace(case, liquid=thicker), f, most):
             found.append(f"a viscosity of about {viscosity * factor:.2g} Pa s would open a window")
             break
     for factor in _TRIED_SIZES:
         smaller = _scaled(case.vessel, factor)
-        if smaller is not None and _opens(Case(case.liquid, smaller, case.allowance, case.surroundings), f, most):
+        if smaller is not None and _opens(dataclasses.replace(case, vessel=smaller), f, most):
             found.append(f"so would the same vessel at {factor:g} of its width" if found else
                          f"the same vessel at {factor:g} of its width would open one")  # fmt: skip
             break

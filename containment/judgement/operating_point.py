@@ -8,8 +8,10 @@ import numpy as np
 import numpy.typing as npt
 
 from containment.constants import STANDARD_GRAVITY
+from containment.errors import NotComputableError
+from containment.given.waveforms import PURE_SINE
 from containment.judgement.case import Case
-from containment.physics.completeness import count_growing
+from containment.physics.completeness import INTEGER_TOLERANCE, count_growing
 from containment.physics.edges import Edges, edge_errors, matters
 from containment.physics.floquet import exponents, growing_exponents
 from containment.physics.hill import Half, rows_needed
@@ -85,7 +87,7 @@ class OperatingPoint:
     @property
     def strictly_inside(self) -> bool:
         """Whether the point lies between the edges for no growth at all."""
-        return bool(self.strict.lower[0] < self.acceleration < self.strict.upper[0]) and self.growth_rate <= 0.0
+        return bool(self.strict.lower[0] < self.acceleration < self.strict.upper[0]) and not self.growth_rate > 0.0
 
 
 def judged_point(case: Case, *, frequency: float, acceleration: float) -> OperatingPoint:
@@ -95,6 +97,8 @@ def judged_point(case: Case, *, frequency: float, acceleration: float) -> Operat
     growth = case.allowance.growth
     edges = case.edges(f)
     strict = edges if growth == 0.0 else case.edges(f, growth=0.0)
+    if case.vessel.contact_line == "pinned" or case.waveform is not PURE_SINE:
+        return _counted_by_order(case, edges, strict, acceleration)
     low, high = (float(gain[0]) for gain in case.gain(f))
     if case.surroundings.cushion is None:
         errors = tuple(float(error[0]) for error in edge_errors(case.layer, edges, growth=growth))
@@ -110,6 +114,49 @@ def judged_point(case: Case, *, frequency: float, acceleration: float) -> Operat
         growing_modes=max(part.growing for part in parts), proven=all(part.proven for part in parts),
         modes_checked=sum(part.checked for part in parts),
         farthest_from_integer=max(part.distance for part in parts), lower_error=errors[0], upper_error=errors[1],
+    )  # fmt: skip
+
+
+def _counted_by_order(case: Case, edges: Edges, strict: Edges, acceleration: float) -> OperatingPoint:
+    """Judge a pinned layer, or one under a motion that is not a pure sine: counts as above, one order or mode at a time."""
+    frequency = float(edges.frequency[0])
+    w = 2.0 * math.pi * frequency
+    growth = case.allowance.growth
+    counted, proven, growing, distance, rate, worst = 0, True, 0, 0.0, math.nan, math.nan
+    if case.vessel.contact_line == "pinned":
+        from containment.physics.pinned_growth import pinned_fastest_growth, pinned_growing
+
+        kind, dims = case.rim
+        try:
+            found = pinned_growing(
+                case.layer, kind, dims, frequency=frequency, acceleration=acceleration, growth=growth  # type: ignore[arg-type]
+            )
+            counted, proven, growing = found.orders, found.proven, found.growing
+            if growing and found.worst_order >= 0:
+                rate = pinned_fastest_growth(
+                    case.layer, kind, dims, found.worst_order, frequency=frequency, acceleration=acceleration  # type: ignore[arg-type]
+                )
+        except NotComputableError:  # a box has edges but no count
+            proven = False
+    else:
+        from containment.physics.motion_hill import fastest_growth, growing_count
+
+        level = acceleration / case.waveform.peak_acceleration
+        coupling = case.waveform.coupling()
+        k, _ = _wavenumbers(case, case.layer, w, level * case.waveform.total)
+        counted = len(k)
+        counts = [growing_count(case.layer, float(mode), w, level, coupling, growth=growth) for mode in k]
+        distance = max((d for _, d in counts), default=0.0)
+        proven = distance <= INTEGER_TOLERANCE
+        modes = [float(mode) for mode, (n, _) in zip(k, counts, strict=True) if n > 0]
+        growing = len(modes)
+        if modes:
+            rates = [fastest_growth(case.layer, mode, w, level, coupling, precision=1e-5) for mode in modes[:20]]
+            rate, worst = max(zip(rates, modes, strict=False))
+    return OperatingPoint(
+        frequency=frequency, acceleration=acceleration, edges=edges, strict=strict, growth_rate=rate,
+        worst_wavenumber=worst, worst_subharmonic=False, growing_modes=growing, proven=proven, modes_checked=counted,
+        farthest_from_integer=distance, lower_error=math.nan, upper_error=math.nan,
     )  # fmt: skip
 
 

@@ -12,7 +12,8 @@ from containment.given.liquid import Liquid
 from containment.given.motion import Motion
 from containment.given.quantities import si_value
 from containment.given.surroundings import Surroundings
-from containment.given.vessel import Cylinder, Vessel
+from containment.given.vessel import Box, Cylinder, Vessel
+from containment.given.waveforms import PURE_SINE, Waveform
 from containment.judgement.case import Allowance, Case, allowance
 from containment.judgement.case_notes import assumptions, averaged_estimate, case_cautions
 from containment.judgement.companions import COVERED_LOWER, COVERED_UPPER, TILT, WALL_DRAG, companion_limits
@@ -43,6 +44,7 @@ def assess(
     amplification: Any = None,
     drive: DriveLimits | None = None,
     surroundings: Surroundings | None = None,
+    shape: Waveform | None = None,
     ambient_pressure: Any = None,
     margin_factor: Any = MARGIN_FACTOR,
 ) -> Verdict:
@@ -64,6 +66,8 @@ def assess(
         What the shaker can do.
     surroundings : Surroundings, optional
         State of the surface, liquid or gas below, tilt.
+    shape : Waveform, optional
+        Shape of the motion where no drive point is given: see `containment.waveform`.
     ambient_pressure : str or pint.Quantity or float, optional
         Absolute, Pa; in place of that of the surroundings.
     margin_factor : float
@@ -88,9 +92,14 @@ def assess(
     drive = drive or DriveLimits()
     factor = si_value(margin_factor, "ratio", "margin factor", least=1.0, most=100.0)
     bear = allowance(depth=vessel.depth, dwell=dwell, unevenness=unevenness, amplification=amplification)
-    case = _case(liquid, vessel, bear, drive, _around(surroundings, ambient_pressure))
+    if motion is not None and shape is not None:
+        raise InputError("motion: its shape is given twice; give it with the motion")
+    form = motion.waveform if motion is not None else shape or PURE_SINE
+    case = _case(liquid, vessel, bear, drive, _around(surroundings, ambient_pressure), form)
     if motion is not None:
         return _at_a_point(case, motion, drive, factor)
+    if isinstance(vessel, Box) and vessel.contact_line == "pinned":
+        raise InputError("contact line: a pinned box is judged at a drive point only; give its frequency and size")
     return _minimum_drive(case, drive, factor)
 
 
@@ -104,13 +113,14 @@ def holding_window(
     amplification: Any = None,
     drive: DriveLimits | None = None,
     surroundings: Surroundings | None = None,
+    shape: Waveform | None = None,
     ambient_pressure: Any = None,
 ) -> HoldingWindow:
     """Return the holding window over frequency.
 
     Parameters
     ----------
-    liquid, vessel, dwell, unevenness, amplification, drive, surroundings, ambient_pressure
+    liquid, vessel, dwell, unevenness, amplification, drive, surroundings, shape, ambient_pressure
         As in `assess`.
     frequencies : array_like, optional
         Hz; by default a geometric net over the drive's range, or 2 to 2000 Hz.
@@ -131,7 +141,7 @@ def holding_window(
     """
     drive = drive or DriveLimits()
     bear = allowance(depth=vessel.depth, dwell=dwell, unevenness=unevenness, amplification=amplification)
-    case = _case(liquid, vessel, bear, drive, _around(surroundings, ambient_pressure))
+    case = _case(liquid, vessel, bear, drive, _around(surroundings, ambient_pressure), shape or PURE_SINE)
     nodes = None
     if frequencies is not None:
         nodes = np.atleast_1d(np.asarray(frequencies, dtype=np.float64))
@@ -145,9 +155,15 @@ def _around(surroundings: Surroundings | None, ambient_pressure: Any) -> Surroun
     return around if ambient_pressure is None else dataclasses.replace(around, ambient_pressure=ambient_pressure)
 
 
-def _case(liquid: Liquid, vessel: Vessel, bear: Allowance, drive: DriveLimits, around: Surroundings) -> Case:
-    if vessel.contact_line != "sliding":
-        raise InputError("contact line: 'pinned' is not available yet for shaken layers; expected 'sliding'")
+def _case(
+    liquid: Liquid, vessel: Vessel, bear: Allowance, drive: DriveLimits, around: Surroundings, shape: Waveform
+) -> Case:
+    if vessel.contact_line == "pinned" and (around.cushion is not None or around.below is not None):
+        raise InputError("contact line: 'pinned' is not modelled over trapped gas or another liquid; expected 'sliding'")
+    if shape is not PURE_SINE and (vessel.contact_line == "pinned" or around.cushion is not None):
+        raise InputError(
+            "motion: a motion that is not a pure sine is not modelled for a pinned contact line or over trapped gas"
+        )
     if liquid.rheology is not None:
         raise InputError(
             f"liquid: {liquid.name} is not Newtonian; give the viscosity of a Newtonian stand-in with name 'custom'"
@@ -157,7 +173,7 @@ def _case(liquid: Liquid, vessel: Vessel, bear: Allowance, drive: DriveLimits, a
             f"below: {around.below.name} of {around.below.density:.4g} kg/m^3 is not lighter than {liquid.name} of "
             f"{liquid.density:.4g} kg/m^3; the lower liquid must be the lighter one"
         )
-    case = Case(liquid, vessel, bear, around)
+    case = Case(liquid, vessel, bear, around, shape)
     if drive.max_force is not None and case.product_mass is None:
         raise InputError(f"max force: a {vessel.kind} has no end, so the product has no mass; leave the force out")
     return case
@@ -168,8 +184,9 @@ def _other_ceiling(case: Case, drive: DriveLimits, f: Any) -> Any:
         density=case.liquid.density, depth=case.vessel.depth, vapour_pressure=case.liquid.vapour_pressure or 0.0,
         ambient_pressure=case.surroundings.ambient_pressure,
     )  # fmt: skip
-    searched = case.amplitude_bound * (2.0 * math.pi * np.asarray(f)) ** 2  # beyond it nothing is known
-    reached = drive.largest_acceleration(f, product_mass=case.product_mass or 0.0)
+    shape = case.waveform
+    searched = case.amplitude_bound * (2.0 * math.pi * np.asarray(f)) ** 2 * shape.peak_acceleration  # nothing known beyond
+    reached = drive.largest_acceleration(f, product_mass=case.product_mass or 0.0, shape=shape)
     return np.minimum(reached, np.minimum(pull, searched) / case.gain(f)[1])
 
 
@@ -181,14 +198,17 @@ def _window(
         lambda f: _other_ceiling(case, drive, f),
         frequency_range=drive.frequency_range or SEARCH_RANGE,
         frequencies=nodes,
+        amplitude_factor=case.waveform.amplitude / case.waveform.peak_acceleration,
+        sparse=case.vessel.contact_line == "pinned" or case.waveform is not PURE_SINE,
     )
     return why_no_window(case, window, drive)
 
 
 def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float) -> Verdict:
-    if motion.amplitude > case.amplitude_bound * (1.0 + 1e-9):
+    level = motion.acceleration / motion.waveform.peak_acceleration / motion.angular_frequency**2
+    if level > case.amplitude_bound * (1.0 + 1e-9):
         raise InputError(
-            f"motion: amplitude {1e3 * motion.amplitude:.4g} mm (zero to peak) is beyond the searched range; it must be at "
+            f"motion: amplitude {1e3 * level:.4g} mm (zero to peak) is beyond the searched range; it must be at "
             f"most {1e3 * case.amplitude_bound:g} mm"
         )
     point = judged_point(case, frequency=motion.frequency, acceleration=motion.acceleration)
@@ -226,7 +246,8 @@ def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float) -
         answer, reason = Answer.HELD, "every mode dies out" if point.strictly_inside else "no mode outgrows the dwell"
     rests = case.unshaken.growth_rate <= case.allowance.growth
     worst = point.worst_wavenumber
-    window = _window(case, drive) if answer is Answer.NOT_HELD and not rests else None
+    slow = isinstance(vessel := case.vessel, Box) and vessel.contact_line == "pinned"
+    window = _window(case, drive) if answer is Answer.NOT_HELD and not rests and not slow else None
     return Verdict(
         answer=answer, question="operating point", reason=reason, proven=point.proven, spans_edge=spans,
         liquid=case.liquid, vessel=case.vessel, surroundings=case.surroundings, drive=drive,
@@ -301,6 +322,8 @@ def _at_rest(case: Case, factor: float) -> tuple[Answer, str]:
     """Judge a layer that needs no shaking; a liquid that wets the wall lets go earlier than the flat surface says."""
     if case.unshaken.growth_rate > 0.0:
         return Answer.HELD, "even unshaken it grows no faster than the dwell allows"
+    if case.vessel.contact_line == "pinned":
+        return Answer.HELD, "the surface tension holds it without shaking, as long as the rim holds the contact line"
     size = float(case.spectrum.discrete[0]) / case.capillary_wavenumber
     if isinstance(case.vessel, Cylinder):
         bond = (0.5 * case.vessel.diameter * case.capillary_wavenumber) ** 2
@@ -321,7 +344,9 @@ def _limits(case: Case, drive: DriveLimits, frequency: float, acceleration: floa
             density=case.liquid.density, depth=case.vessel.depth, vapour_pressure=case.liquid.vapour_pressure,
             acceleration=acceleration * float(case.gain(frequency)[1]), ambient_pressure=case.surroundings.ambient_pressure,
         ),
-        *drive_limits(drive, frequency=frequency, acceleration=acceleration, product_mass=case.product_mass),
+        *drive_limits(
+            drive, frequency=frequency, acceleration=acceleration, product_mass=case.product_mass, shape=case.waveform
+        ),
     ]  # fmt: skip
 
 
@@ -335,7 +360,7 @@ def _spans_edge(case: Case, motion: Motion) -> bool:
         corners = [{**c, name: value * (1.0 + sign * min(spread[name], 0.9))} for c in corners for sign in (-1, 1)]
     for corner in corners if names else []:
         values = {n: corner.get(n, getattr(case.liquid, n)) for n in ("density", "viscosity", "surface_tension")}
-        edges = Case(Liquid(**values), case.vessel, case.allowance, case.surroundings).edges(np.array([motion.frequency]))
+        edges = dataclasses.replace(case, liquid=Liquid(**values)).edges(np.array([motion.frequency]))
         if not edges.lower[0] < motion.acceleration < edges.upper[0]:
             return True
     return False

@@ -43,6 +43,8 @@ class HoldingPoint:
         Least of the upper edge and of what the drive and the other limits allow, m/s^2.
     lower_wavenumber, upper_wavenumber : float
         Of the modes that bind, 1/m; not-a-number where there is none.
+    amplitude_factor : float
+        Half the stroke times w^2 over the peak acceleration: 1 for a sine.
     """
 
     frequency: float
@@ -52,11 +54,12 @@ class HoldingPoint:
     ceiling: float
     lower_wavenumber: float
     upper_wavenumber: float
+    amplitude_factor: float = 1.0
 
     @property
     def amplitude(self) -> float:
-        """Amplitude, zero to peak, m."""
-        return self.acceleration / (2.0 * math.pi * self.frequency) ** 2
+        """Amplitude, half the stroke, m."""
+        return self.amplitude_factor * self.acceleration / (2.0 * math.pi * self.frequency) ** 2
 
     @property
     def margin(self) -> float:
@@ -133,12 +136,13 @@ class _Sample:
         result: npt.NDArray[np.bool_] = self.edges.lower < self.ceiling
         return result
 
-    def point(self, i: int, acceleration: float) -> HoldingPoint:
+    def point(self, i: int, acceleration: float, amplitude_factor: float) -> HoldingPoint:
         e = self.edges
         return HoldingPoint(
             frequency=float(e.frequency[i]), acceleration=acceleration, lower=float(e.lower[i]),
             upper=float(e.upper[i]), ceiling=float(self.ceiling[i]),
             lower_wavenumber=float(e.lower_wavenumber[i]), upper_wavenumber=float(e.upper_wavenumber[i]),
+            amplitude_factor=amplitude_factor,
         )  # fmt: skip
 
 
@@ -148,6 +152,8 @@ def search_window(
     *,
     frequency_range: tuple[float, float] = SEARCH_RANGE,
     frequencies: Real | None = None,
+    amplitude_factor: float = 1.0,
+    sparse: bool = False,
 ) -> HoldingWindow:
     """Search the window and refine its corners.
 
@@ -161,6 +167,10 @@ def search_window(
         Frequencies that are searched, Hz.
     frequencies : array, optional
         Nodes to be used instead of a geometric net over the range.
+    amplitude_factor : float
+        Half the stroke times w^2 over the peak acceleration of the motion: 1 for a sine.
+    sparse : bool
+        Fewer nodes, for edges that are slow to compute.
 
     Returns
     -------
@@ -169,7 +179,9 @@ def search_window(
         Where the openness of the window has a peak between nodes the peak is looked into, so that a narrow window is
         not overlooked.
     """
-    nodes = np.geomspace(*frequency_range, _NODES) if frequencies is None else np.sort(np.asarray(frequencies, float))
+    nodes = np.geomspace(*frequency_range, _NODES // 2 if sparse else _NODES)
+    if frequencies is not None:
+        nodes = np.sort(np.asarray(frequencies, dtype=np.float64))
 
     def sample(f: Real) -> _Sample:
         edges = edges_of(f)
@@ -193,7 +205,9 @@ def search_window(
             f = near.edges.frequency
             low, high = f[max(best - 1, 0)], f[min(best + 1, _ZOOM - 1)]
     everything = _merged(held_at)
-    corners = _corners(everything, sample) if everything.held.any() else (None, None, None)
+    corners: tuple[HoldingPoint | None, ...] = (None, None, None)
+    if everything.held.any():
+        corners = _corners(everything, sample, amplitude_factor, _PER_LEVEL // 2 if sparse else _PER_LEVEL)
     return HoldingWindow(
         frequencies=nodes, lower=coarse.edges.lower, upper=coarse.edges.upper, ceiling=coarse.ceiling,
         drive_ceiling=np.asarray(drive_ceiling(nodes), dtype=np.float64),
@@ -215,7 +229,7 @@ def _merged(samples: list[_Sample]) -> _Sample:
 
 
 def _corners(
-    everything: _Sample, sample: Callable[[Real], _Sample]
+    everything: _Sample, sample: Callable[[Real], _Sample], amplitude_factor: float, per_level: int
 ) -> tuple[HoldingPoint, HoldingPoint, HoldingPoint]:
     def least_lower(s: _Sample) -> Real:
         return np.where(s.held, s.edges.lower, np.inf)
@@ -234,7 +248,7 @@ def _corners(
             best = int(np.argmin(cost(everything)))
             low, high = f[max(best - 1, 0)], f[min(best + 1, len(f) - 1)]
             if high > low * (1.0 + precision):
-                new.append(np.geomspace(low, high, _PER_LEVEL + 2)[1:-1])
+                new.append(np.geomspace(low, high, per_level + 2)[1:-1])
         if not new:
             break
         everything = _merged([everything, sample(np.unique(np.concatenate(new)))])
@@ -243,5 +257,5 @@ def _corners(
         at = int(np.argmin(cost(everything)))
         lower, ceiling = float(everything.edges.lower[at]), float(everything.ceiling[at])
         inside = cost is narrowest and lower > 0.0 and math.isfinite(ceiling)
-        found.append(everything.point(at, math.sqrt(lower * ceiling) if inside else lower))
+        found.append(everything.point(at, math.sqrt(lower * ceiling) if inside else lower, amplitude_factor))
     return found[0], found[1], found[2]

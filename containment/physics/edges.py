@@ -22,7 +22,7 @@ from containment.physics.exclusion import BoundedLayer, Floor, matters, not_excl
 from containment.physics.hill import Half, rows_needed
 from containment.physics.wavenumbers import Spectrum
 
-__all__ = ["AMPLITUDE_BOUND", "BoundedLayer", "Edges", "edge_errors", "first_roots", "hold_edges", "matters"]
+__all__ = ["AMPLITUDE_BOUND", "Edges", "edge_errors", "extreme", "first_roots", "hold_edges", "matters", "nodes_up_to"]
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
@@ -161,7 +161,7 @@ def hold_edges(
     rest = np.flatnonzero(np.isinf(low) & (ceiling[lw] < cap[lw]))
     if len(rest):
         low[rest] = first_roots(layer, k[lk[rest]], w[lw[rest]], growth, cap[lw[rest]], subharmonic=False)
-    lower, lower_k = _extreme(low, lw, lk, len(w), np.maximum)
+    lower, lower_k = extreme(low, lw, lk, len(w), np.maximum)
     lower_wave = np.where(lower_k >= 0, k[lower_k], np.nan)
     if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
         lower[:], lower_wave[:] = np.inf, 0.0  # the acceleration needed grows without bound as k falls
@@ -171,7 +171,7 @@ def hold_edges(
     upper_sub = np.isfinite(upper)
 
     def note(root: Real, at_w: npt.NDArray[np.intp], at_k: Real, subharmonic: bool) -> None:
-        best, where = _extreme(root, at_w, np.arange(len(root)), len(w), np.minimum)
+        best, where = extreme(root, at_w, np.arange(len(root)), len(w), np.minimum)
         better = np.flatnonzero((best < upper) & (where >= 0))
         upper[better] = best[better]
         upper_wave[better] = at_k[where[better]]
@@ -226,7 +226,7 @@ def _wavenumber_nodes(
     reach = 4.0 * max(capillary, 3.0 / depth if np.isfinite(depth) else 0.0)
     breaks, breaks_k = np.full(len(w), np.inf), np.full(len(w), np.nan)
     for _ in range(40):
-        k = _nodes_up_to(spectrum, reach, min(capillary, 1.0 / depth))
+        k = nodes_up_to(spectrum, reach, min(capillary, 1.0 / depth))
         best, size = _likely_breaker(layer, k, w, growth)
         stop = np.minimum(cap, 4.0 * size)
         root = first_roots(layer, k[best], w, growth, stop, subharmonic=True)
@@ -260,7 +260,8 @@ def _likely_breaker(
     return fine[rows, seen], size[rows, seen]
 
 
-def _nodes_up_to(spectrum: Spectrum, reach: float, slowest: float) -> Real:
+def nodes_up_to(spectrum: Spectrum, reach: float, slowest: float) -> Real:
+    """Return the wavenumbers of a vessel up to a reach: its modes, and nodes where every wavenumber counts, 1/m."""
     start = spectrum.continuous_from or 1e-3 * slowest
     if reach <= start:
         k = spectrum.discrete
@@ -269,7 +270,7 @@ def _nodes_up_to(spectrum: Spectrum, reach: float, slowest: float) -> Real:
     return np.concatenate([spectrum.discrete, start * np.exp(np.arange(count) / _NODES_PER_E_FOLD)])
 
 
-def _extreme(
+def extreme(
     values: Real, at_w: npt.NDArray[np.intp], label: npt.NDArray[np.intp], count: int, pick: np.ufunc
 ) -> tuple[Real, npt.NDArray[np.intp]]:
     """Return the largest (or smallest) value of each frequency and the label of the case that has it, -1 for none."""

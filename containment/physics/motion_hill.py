@@ -41,7 +41,7 @@ class MotionHalf:
     coefficients : array of complex, shape (rows + 1, cases)
         A_n, n = 0 ... N.
     coupling : array of complex, shape (M,)
-        c_m, see `containment.physics.motions.Waveform.coupling`.
+        c_m, see `containment.given.waveforms.Waveform.coupling`.
     subharmonic : bool
         Which of the two systems it is.
 
@@ -51,7 +51,7 @@ class MotionHalf:
 
     >>> from containment.physics.crossings import first_crossing
     >>> from containment.physics.dispersion import Layer
-    >>> from containment.physics.motions import PURE_SINE, crank_and_rod
+    >>> from containment.given.waveforms import PURE_SINE, crank_and_rod
     >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
     >>> k, w = np.array([60.0]), np.array([314.16])
     >>> for motion in (PURE_SINE, crank_and_rod(rod_ratio=0.25)):
@@ -210,7 +210,7 @@ def growing_count(
     Examples
     --------
     >>> from containment.physics.dispersion import Layer
-    >>> from containment.physics.motions import crank_and_rod
+    >>> from containment.given.waveforms import crank_and_rod
     >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
     >>> motion = crank_and_rod(rod_ratio=0.25).coupling()
     >>> [growing_count(layer, 60.0, 314.16, level, motion)[0] for level in (100.0, 250.0)]
@@ -263,7 +263,7 @@ def fastest_growth(
     Examples
     --------
     >>> from containment.physics.dispersion import Layer
-    >>> from containment.physics.motions import PURE_SINE
+    >>> from containment.given.waveforms import PURE_SINE
     >>> layer = Layer(density=1410.0, viscosity=10.0, surface_tension=0.08, depth=0.03)
     >>> round(fastest_growth(layer, 60.0, 314.16, 0.01, PURE_SINE.coupling()), 3)  # hardly shaken: the layer falls
     5.969

@@ -189,6 +189,7 @@ def pinned_edges(
         edge_error(upper, better_upper),
         lower_order,
         upper_order,
+        upper_subharmonic,
     )
 
 

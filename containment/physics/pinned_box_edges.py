@@ -80,6 +80,7 @@ def box_edges(
         edge_error(upper, better[1]),
         lower_order,
         upper_order,
+        subharmonic,
     )
 
 

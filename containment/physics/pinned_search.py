@@ -50,6 +50,8 @@ class PinnedEdges:
         again, more nodes, more harmonics). An estimate, not a proof.
     lower_order, upper_order : array of int, shape (F,)
         Circumferential order that sets the edge; -1 where there is none.
+    upper_subharmonic : array of bool, shape (F,)
+        Whether the wave at the upper edge answers at half the drive frequency.
     """
 
     frequencies: Real
@@ -59,6 +61,7 @@ class PinnedEdges:
     upper_error: Real
     lower_order: Whole
     upper_order: Whole
+    upper_subharmonic: npt.NDArray[np.bool_]
 
 
 def last_above(half: CountedCases, start: Real, stop: Real, left: int) -> tuple[Real, Real]:
