@@ -84,7 +84,8 @@ def random_point(rng):
         edge = lower if rng.random() < 0.5 and lower < most else upper
         acceleration = edge * (1.0 + rng.choice([-1.0, 1.0]) * log_uniform(rng, 3e-4, 0.5))
     else:
-        acceleration = log_uniform(rng, 1e-6, 0.06) * w2
+        # anything up to 60 mm, though not thousands of times beyond what matters: there the surface is long gone
+        acceleration = min(log_uniform(rng, 1e-6, 0.06) * w2, 100.0 * (upper if math.isfinite(upper) else most))
     return Point(case, frequency, float(min(acceleration, most)))
 
 
