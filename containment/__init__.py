@@ -8,6 +8,10 @@ _PUBLIC: Final = {
     "InputError": "containment.errors",
     "NotComputableError": "containment.errors",
     "ContainmentError": "containment.errors",
+    "Grains": "containment.given.grains",
+    "grains": "containment.given.grains",
+    "BedVerdict": "containment.judgement.bed_verdict",
+    "assess_bed": "containment.judgement.bed_verdict",
     "Liquid": "containment.given.liquid",
     "liquid": "containment.given.liquid",
     "Cylinder": "containment.given.vessel",
@@ -30,10 +34,12 @@ __all__ = sorted(_PUBLIC)
 if TYPE_CHECKING:
     from containment.errors import ContainmentError, InputError, NotComputableError
     from containment.given.drive import DriveLimits
+    from containment.given.grains import Grains, grains
     from containment.given.liquid import Liquid, liquid
     from containment.given.motion import Motion, waveform
     from containment.given.surroundings import Surroundings
     from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded
+    from containment.judgement.bed_verdict import BedVerdict, assess_bed
     from containment.judgement.verdict import Verdict, assess, holding_window
     from containment.judgement.window import HoldingWindow
 

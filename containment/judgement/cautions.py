@@ -85,9 +85,9 @@ def product_cautions(
     return found
 
 
-def trial_cautions() -> list[Caution]:
-    """Return what holds for every verdict."""
+def trial_cautions(*, stand_in: str = "a harmless liquid") -> list[Caution]:
+    """Return what holds for every verdict; `stand_in` is what a first trial is made with."""
     return [
-        Caution(topic="trial first", text="Try it at small scale, with a harmless liquid and a full catch tray, first."),
+        Caution(topic="trial first", text=f"Try it at small scale, with {stand_in} and a full catch tray, first."),
         GOVERNING_RULES,
     ]

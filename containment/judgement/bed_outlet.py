@@ -1,0 +1,129 @@
+"""Judgement of a bed over an outlet: too coarse to pass, arched by cohesion, arched by chance, or pouring."""
+
+from containment.constants import STANDARD_GRAVITY
+from containment.judgement.bed_case import BedCase, Judged, Mechanism, better
+from containment.judgement.findings import Answer, seconds_text
+from containment.physics.bed.arching import ARCH_RATIO, grains_before_arch, lasting_arch_outlet, passes_outlet
+from containment.physics.bed.cohesion import arch_outlet, arch_shape_factor
+from containment.physics.bed.discharge import SHAKEN_FACTOR, discharge_rate, slot_discharge_rate
+
+__all__ = ["judge_outlet"]
+
+_TOO_FINE = 4e-4
+
+
+def judge_outlet(case: BedCase) -> Judged:
+    """Return what a bed over a round outlet or a slot does at the case's level of shaking."""
+    supports = [_too_coarse(case), _cohesive_arch(case), _chance_arch(case)]
+    answers = [m.answer for m in supports if m.answer is not None]
+    answer = better(*answers)
+    binding = next(m for m in supports if m.answer is answer)
+    figures = _discharge(case)
+    if answer is Answer.NOT_HELD:
+        binding, reason = figures[0], "the grains flow freely through the outlet"
+        if not case.material.free_flowing:
+            binding = supports[1]
+            reason = "the outlet is wider than the powder can arch over"
+        elif float(lasting_arch_outlet(diameter=case.material.d10)) > (case.setting.size or 0.0) > 0.0:
+            binding = supports[2]
+            reason = "each stroke unloads the grains' arch and breaks it" if _round(case) else (
+                "no size is known below which a slot stays blocked"
+            )
+        return Judged(answer=answer, reason=reason, binding=binding.name, mechanisms=(*supports, *figures), holding_time=0.0)
+    words = {
+        supports[0].name: "the grains are too coarse for the outlet",
+        supports[1].name: "the cohesive arch bears the load",
+        supports[2].name: "only an arch formed by chance blocks the outlet, and any knock may break it",
+    }
+    reason = words[binding.name]
+    if answer is Answer.MARGINAL and binding is supports[1]:
+        reason = (
+            "the arch would bear the load, but the bed lifts off and lands on it in each stroke"
+            if case.gamma >= 1.0 and case.graded(binding.ratio or 0.0) is Answer.HELD
+            else case.shortfall("the cohesive arch", binding.ratio or 0.0)
+        )
+    if answer is Answer.MARGINAL and binding is supports[0]:
+        reason = "most grains are too coarse for the outlet, but finer ones sift through"
+    return Judged(answer=answer, reason=reason, binding=binding.name, mechanisms=(*supports, *figures))
+
+
+def _round(case: BedCase) -> bool:
+    return case.setting.kind == "outlet"
+
+
+def _too_coarse(case: BedCase) -> Mechanism:
+    size, material = case.setting.size or 0.0, case.material
+    answer = Answer.NOT_HELD
+    if not passes_outlet(outlet=size, smallest_grain=material.d10):
+        sure = material.one_size and size * case.margin <= material.d10
+        answer = Answer.HELD if sure else Answer.MARGINAL
+    return Mechanism(
+        name="grains too coarse for the outlet", answer=answer, value=size, bound=material.d10, unit="m",
+        ratio=material.d10 / size, source="geometry; shaken flow down to one grain diameter: Janda et al. 2009, abstract read",
+        remark="d10 against the outlet: a tenth of the mass is finer" if not material.one_size else "all grains alike",
+    )  # fmt: skip
+
+
+def _cohesive_arch(case: BedCase) -> Mechanism:
+    size, material = case.setting.size or 0.0, case.material
+    factor = arch_shape_factor(slot=not _round(case))
+    span = float(
+        arch_outlet(
+            yield_strength=material.yield_strength, bulk_density=material.bulk_density, gamma=case.gamma,
+            shape_factor=factor, gravity=STANDARD_GRAVITY,
+        )
+    )  # fmt: skip
+    ratio = span / size
+    answer = Answer.NOT_HELD
+    remark = f"H = {factor:g}; weight times 1 + Gamma"
+    if material.free_flowing:
+        remark = "free-flowing: no strength to arch with"
+    else:
+        answer = case.graded(ratio)
+        if case.gamma >= 1.0 and answer is Answer.HELD:
+            answer = Answer.MARGINAL
+            remark = "above Gamma 1 the bed lands on the arch; that shock is not covered"
+    return Mechanism(
+        name="cohesive arch", answer=answer, value=size, bound=span, unit="m", ratio=ratio,
+        source="Jenike 1964, textbook form read; shaken: force balance", remark=remark,
+    )  # fmt: skip
+
+
+def _chance_arch(case: BedCase) -> Mechanism:
+    size, material = case.setting.size or 0.0, case.material
+    widest = float(lasting_arch_outlet(diameter=material.d10))
+    lasting = _round(case) and size < widest
+    answer = Answer.MARGINAL if lasting and case.gamma < 1.0 else Answer.NOT_HELD
+    remark = f"spheres, {ARCH_RATIO['spheres']:g} d10; elongated grains arch up to {ARCH_RATIO['elongated']:g}"
+    if not _round(case):
+        remark = "no sourced size for slots: not credited"
+    elif lasting:
+        before = float(grains_before_arch(size / material.d10))
+        remark += f"; at rest about {max(before, 1.0):.2g} spheres pass before it forms"
+    return Mechanism(
+        name="arch of grains by chance", answer=answer, value=size, bound=widest, unit="m", ratio=widest / size,
+        source="Zuriguel et al. 2005, abstract read, figures from memory; never better than marginal", remark=remark,
+    )  # fmt: skip
+
+
+def _discharge(case: BedCase) -> list[Mechanism]:
+    size, material = case.setting.size or 0.0, case.material
+    common = {"diameter": material.d50, "bulk_density": material.bulk_density, "gravity": STANDARD_GRAVITY}
+    remark = "if nothing blocks it; shaking hardly changes it"
+    if material.d50 < _TOO_FINE:
+        remark = "an upper figure: so fine a powder flows slower, against its own gas"
+    elif not material.free_flowing:
+        remark = "an upper figure for a powder with cohesion"
+    mass = case.product_mass
+    if _round(case):
+        rate = SHAKEN_FACTOR * float(discharge_rate(outlet=size, **common))
+        unit, source = "kg/s", "Beverloo et al. 1961, coefficients from memory"
+    else:
+        length = case.widest if case.widest is not None and case.vessel.kind != "slot" else 1.0
+        rate = SHAKEN_FACTOR * float(slot_discharge_rate(width=size, length=length, **common))
+        unit, source = "kg/s", "Nedderman 1992, from memory"
+        if case.vessel.kind in ("slot", "unbounded"):
+            unit, mass = "kg/s per m", None
+    if mass is not None and rate > 0.0:
+        remark += f"; empties in {seconds_text(mass / rate)}"
+    return [Mechanism(name="discharge rate", answer=None, value=rate, bound=None, unit=unit, source=source, remark=remark)]
