@@ -11,11 +11,11 @@ _MOST_REPORTED = 40
 
 
 def shown(text: str) -> str:
-    """Return a cell as one printable line of bounded length, in quotes.
+    r"""Return a cell as one printable line of bounded length, in quotes.
 
     Examples
     --------
-    >>> shown("a\\x1b[31mb")
+    >>> shown("a\x1b[31mb")
     "'a?[31mb'"
     """
     clean = "".join(c if c.isprintable() else "?" for c in text[:60])

@@ -63,11 +63,14 @@ class _Table:
 def _table(path: Path, *, trusted: bool) -> _Table:
     rows, faults = read_rows(path, trusted=trusted)
     table = _Table(faults, {}, {}, {}, "built in" if trusted else faults.file)
+    name, key = "", ""
     for row in rows:
         if row.kind not in KINDS_OF_ENTRY:
-            faults.add(row.line, "kind", f"{shown(row.kind)} is not a kind of entry; expected {', '.join(KINDS_OF_ENTRY)}")
+            reason = f"{shown(row.kind)} is not a kind of entry; expected {', '.join(KINDS_OF_ENTRY)}"
+            faults.add(row.line, "kind", reason)
             continue
-        key = name_key(row.name)
+        if row.name != name:  # the rows of an entry stand together
+            name, key = row.name, name_key(row.name)
         if not trusted and (not key or not _NAME.fullmatch(row.name)):
             faults.add(row.line, "name", f"{shown(row.name)} is not a name; expected letters, digits, blanks and hyphens")
             continue
@@ -77,17 +80,20 @@ def _table(path: Path, *, trusted: bool) -> _Table:
         entry = table.rows.setdefault((row.kind, key), [])
         if entry and entry[0].name != row.name:
             faults.add(row.line, "name", f"{shown(row.name)} and {shown(entry[0].name)} are the same name")
+        if not entry:
+            _note_meaning(table, row, key)
         entry.append(row)
-        _note_meaning(table, row, key)
         if row.field == "synonym":
             _note_meaning(table, row, key, name_key(row.value))
     return table
 
 
 def _note_meaning(table: _Table, row: Row, key: str, synonym: str | None = None) -> None:
-    other = table.meant.setdefault((row.kind, synonym if synonym is not None else key), key)
+    other = table.meant.setdefault((row.kind, key if synonym is None else synonym), key)
     if other != key:
-        table.faults.add(row.line, "name", f"{shown(row.value if synonym else row.name)} already means {shown(table.rows[row.kind, other][0].name)}")
+        said = shown(row.name if synonym is None else row.value)
+        meaning = shown(table.rows[row.kind, other][0].name)
+        table.faults.add(row.line, "name", f"{said} already means {meaning}")
 
 
 @functools.cache

@@ -8,9 +8,8 @@ import csv
 import io
 import re
 from collections.abc import Iterator
-from dataclasses import dataclass
 from pathlib import Path
-from typing import Any, Final
+from typing import Any, Final, NamedTuple
 
 from containment.errors import InputError
 from containment.given.tables.faults import Faults, shown
@@ -31,8 +30,7 @@ _HEADER: Final = re.compile(r"\s*([A-Za-z_]+)\s*(?:\[([^\]]*)\])?\s*")
 _NUMBER: Final = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?")
 
 
-@dataclass(frozen=True, slots=True)
-class Row:
+class Row(NamedTuple):
     """A field of an entry, as text; `low`, `high` and `uncertainty` carry their unit."""
 
     line: int
@@ -118,22 +116,28 @@ def _csv_rows(text: str, faults: Faults) -> Iterator[Row]:
         if places is None:
             return
         count = len(header)
-        order = [places.get(column, (-1, "")) for column in COLUMNS]
+        order = [places.get(column, (count, ""))[0] for column in COLUMNS]
+        units = [places.get(column, (count, ""))[1] for column in _WITH_UNIT]
         for cells in reader:
             if not cells or cells[0].startswith("#"):
                 continue
             if len(cells) != count:
                 if any(cell.strip() for cell in cells):
-                    faults.add(
-                        reader.line_num, "row", f"has {len(cells)} cells where the header has {count}; quote commas"
-                    )
+                    reason = f"has {len(cells)} cells where the header has {count}; put quotes round commas"
+                    faults.add(reader.line_num, "row", reason)
                 continue
+            cells.append("")  # what a column that is not there reads
             kind, name, field, law, value, unit, low, high, uncertainty, source, read = (
-                _with_unit(cells[place].strip(), unit) if place >= 0 else "" for place, unit in order
+                cells[place].strip() for place in order
             )
+            if low or high:
+                low, high = _with_unit(low, units[0]), _with_unit(high, units[1])
+            if uncertainty:
+                uncertainty = _with_unit(uncertainty, units[2])
             yield Row(
-                reader.line_num, kind.lower(), name, field.lower(), law.lower(), value, unit, low, high, uncertainty, source, read
-            )
+                reader.line_num, kind.lower(), name, field.lower(), law.lower(), value, unit, low, high, uncertainty,
+                source, read,
+            )  # fmt: skip
             if reader.line_num > _MOST_ROWS:
                 faults.add(reader.line_num, "row", f"more than {_MOST_ROWS} lines; expected a smaller table")
                 return
@@ -179,6 +183,7 @@ def _look_for_hostile_cells(row: Row, faults: Faults) -> None:
         elif not cell.isprintable():
             faults.add(row.line, column, f"{shown(cell)} holds control characters; expected plain text")
         elif _FORMULA.match(cell) and not _NUMBER.match(cell.lstrip()):
-            faults.add(row.line, column, f"{shown(cell)} looks like a spreadsheet formula; expected plain text or a number")
+            reason = f"{shown(cell)} looks like a spreadsheet formula; expected plain text or a number"
+            faults.add(row.line, column, reason)
         elif _MARKUP.search(cell):
             faults.add(row.line, column, f"{shown(cell)} holds markup; expected plain text")

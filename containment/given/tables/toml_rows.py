@@ -32,7 +32,8 @@ def toml_rows(text: str, faults: Faults) -> Iterator[Row]:
         return
     for kind, entries in document.items():
         if kind not in KINDS_OF_ENTRY or not isinstance(entries, dict):
-            faults.add(_line(text, kind), shown(kind), f"is not a kind of entry; expected [{'.NAME], ['.join(KINDS_OF_ENTRY)}.NAME]")
+            expected = ", ".join(f"[{known}.NAME]" for known in KINDS_OF_ENTRY)
+            faults.add(_line(text, kind), shown(kind), f"is not a kind of entry; expected {expected}")
             continue
         for name, fields in entries.items():
             if not isinstance(fields, dict) or not fields:
