@@ -10,12 +10,13 @@ import sys
 from collections.abc import Iterable, Sequence
 from typing import TYPE_CHECKING, Final
 
+from containment.given.vessel import Annulus, Box, Cylinder, Slot, Vessel
 from containment.judgement.findings import Answer, Caution, Limit, seconds_text
 
 if TYPE_CHECKING:
     from rich.console import RenderableType
 
-__all__ = ["Screen", "quantity_text", "seconds_text"]
+__all__ = ["Screen", "quantity_text", "seconds_text", "vessel_text"]
 
 _PIPED_WIDTH: Final = 80
 _NARROWEST: Final = 60
@@ -49,6 +50,24 @@ def quantity_text(value: float | None, unit: str, digits: int = 3) -> str:
     if "e" in text and 1e-3 <= abs(scaled) < 1e6:
         text = f"{scaled:.0f}"
     return f"{text} {shown}".rstrip()
+
+
+def vessel_text(vessel: Vessel) -> str:
+    """Return the vessel in words, lengths in mm."""
+
+    def mm(value: float) -> str:
+        return f"{1e3 * value:.4g}"
+
+    match vessel:
+        case Cylinder():
+            return f"cylinder of {mm(vessel.diameter)} mm diameter"
+        case Box():
+            return f"box of {mm(vessel.width)} mm x {mm(vessel.length)} mm"
+        case Annulus():
+            return f"ring of {mm(vessel.inner_diameter)} mm inner and {mm(vessel.outer_diameter)} mm outer diameter"
+        case Slot():
+            return f"slot of {mm(vessel.width)} mm width"
+    return "layer without side walls"
 
 
 class Screen:

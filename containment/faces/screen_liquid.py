@@ -3,8 +3,7 @@
 import math
 
 from containment.constants import ABSOLUTE_ZERO_CELSIUS
-from containment.faces.screen import Screen, quantity_text, seconds_text
-from containment.given.vessel import Annulus, Box, Cylinder, Slot, Vessel
+from containment.faces.screen import Screen, quantity_text, seconds_text, vessel_text
 from containment.judgement.case import spectrum_of
 from containment.judgement.findings import Answer
 from containment.judgement.operating_point import OperatingPoint
@@ -12,24 +11,6 @@ from containment.judgement.verdict import Verdict
 from containment.judgement.window import HoldingPoint
 
 __all__ = ["headline", "liquid_screen", "vessel_text"]
-
-
-def vessel_text(vessel: Vessel) -> str:
-    """Return the vessel in words, lengths in mm."""
-
-    def mm(value: float) -> str:
-        return f"{1e3 * value:.4g}"
-
-    match vessel:
-        case Cylinder():
-            return f"cylinder of {mm(vessel.diameter)} mm diameter"
-        case Box():
-            return f"box of {mm(vessel.width)} mm x {mm(vessel.length)} mm"
-        case Annulus():
-            return f"ring of {mm(vessel.inner_diameter)} mm inner and {mm(vessel.outer_diameter)} mm outer diameter"
-        case Slot():
-            return f"slot of {mm(vessel.width)} mm width"
-    return "layer without side walls"
 
 
 def _stroke(frequency: float, acceleration: float) -> str:

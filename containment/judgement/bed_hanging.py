@@ -110,7 +110,7 @@ def _lower_face(case: BedCase) -> Mechanism:
     needed = 1.0 + case.gamma
     return Mechanism(
         name="lower face of the bed", answer=case.graded(bond / needed), value=needed, bound=bond,
-        unit="times a grain's weight", ratio=bond / needed, source="Rumpf 1962, from memory; force balance",
+        unit="", ratio=bond / needed, source="Rumpf 1962, from memory; force balance",
         remark="Bond number of the coarse grains (d90) on contacts of the mean strength",
     )  # fmt: skip
 
@@ -141,7 +141,7 @@ def _gas(case: BedCase) -> tuple[Mechanism, Mechanism, float]:
     )
     time = float(support_time(allowed_drop=allowed, first_drop=total, velocity=velocity))
     drop = Mechanism(
-        name="drop until the gas carries the bed", answer=Answer.HELD if total < allowed else Answer.NOT_HELD,
+        name="drop until the gas carries it", answer=Answer.HELD if total < allowed else Answer.NOT_HELD,
         value=total if math.isfinite(total) else None, bound=allowed, unit="m",
         ratio=allowed / total if total > 0.0 and math.isfinite(total) else None,
         source="isothermal gas, force balance; swing of a mass on the gas as a spring", remark="bound: the allowed drop",

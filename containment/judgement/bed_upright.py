@@ -90,7 +90,7 @@ def _take_off(case: BedCase) -> Mechanism:
         )  # fmt: skip
         remark = f"with its cohesion to the base perhaps from Gamma {needed:.3g}; not credited"
     return Mechanism(
-        name="the bed leaves its base", answer=None, value=case.gamma, bound=1.0, unit="Gamma",
+        name="Gamma against take-off", answer=None, value=case.gamma, bound=1.0, unit="",
         source="force balance, common practice", ratio=1.0 / case.gamma if case.gamma else None, remark=remark,
     )  # fmt: skip
 

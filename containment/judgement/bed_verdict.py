@@ -259,7 +259,7 @@ def _change_of_answer(
         low, high = high, 2.0 * high
         if high > _LARGEST_GAMMA:
             return None, None
-    while high - low > 1e-9 * high:
+    while high - low > 1e-7 * high:
         middle = 0.5 * (low + high)
         if good(judge(case.at(middle)).answer):
             low = middle

@@ -40,7 +40,7 @@ FIRST_DOUBLING: Final = math.sqrt(4.0 + math.pi**2)
 """Gamma from which long and short flights alternate: 3.724. Flights of one period start at cos(p) = pi/Gamma; a small
 change of p is multiplied by 1 - Gamma sin(p) from one landing to the next, which passes -1 there."""
 
-_STEP: Final = 0.02
+_STEP: Final = 0.05
 _LARGEST_GAMMA: Final = 1e4
 _NO_DRAG: Final = 1e-7
 
@@ -205,7 +205,7 @@ def flight(gamma: float, launch_phase: float | None = None, *, drag: float = 0.0
     below = np.flatnonzero(gap <= 0.0)
     last = int(below[0])  # the bound above makes the gap negative within the net
     if last == 0:
-        return None  # lifts by less than the net resolves: gap under 1e-8 g/w^2
+        return None  # lifts by less than the net resolves: gap under 1e-6 g/w^2
     low, high = float(t[last - 1]), float(t[last])
     for i in np.flatnonzero((rate[: last - 1] < 0.0) & (rate[1:last] >= 0.0)):
         dip = _bisect(gamma, phase, drag, float(t[i]), float(t[i + 1]), 1)
