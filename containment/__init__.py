@@ -14,6 +14,7 @@ _PUBLIC: Final = {
     "assess_bed": "containment.judgement.bed_verdict",
     "Liquid": "containment.given.liquid",
     "liquid": "containment.given.liquid",
+    "slurry": "containment.given.slurry",
     "Cylinder": "containment.given.vessel",
     "Box": "containment.given.vessel",
     "Annulus": "containment.given.vessel",
@@ -37,6 +38,7 @@ if TYPE_CHECKING:
     from containment.given.grains import Grains, grains
     from containment.given.liquid import Liquid, liquid
     from containment.given.motion import Motion, waveform
+    from containment.given.slurry import slurry
     from containment.given.surroundings import Surroundings
     from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded
     from containment.judgement.bed_verdict import BedVerdict, assess_bed

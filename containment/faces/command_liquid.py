@@ -2,6 +2,7 @@
 
 import argparse
 
+from containment.errors import InputError
 from containment.faces import options as shared
 from containment.given.liquid import Liquid
 from containment.given.surroundings import Surroundings
@@ -18,6 +19,9 @@ def add_liquid(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--viscosity", metavar="MU", help="dynamic, in place of the table's, such as 1.41Pa*s")
     group.add_argument("--surface-tension", metavar="GAMMA", help="in place of the table's, such as 63mN/m")
     group.add_argument("--table", metavar="FILE", action="append", help="a table of your own; may be repeated")
+    group.add_argument("--solids", metavar="FRACTION", help="solids suspended in it, by volume, such as 0.35")
+    group.add_argument("--max-packing", metavar="FRACTION", help="of these solids at their closest, such as 0.64")
+    group.add_argument("--particle-density", metavar="RHO", help="of the solids; default that of the liquid")
 
 
 def add_process(parser: argparse.ArgumentParser) -> None:
@@ -91,12 +95,30 @@ def liquid_from(options: argparse.Namespace) -> Liquid:
             ("surface_tension", "surface tension"),
         )
     }
-    return liquid(
+    made = liquid(
         options.name,
         temperature=shared.quantity(options, "temperature", "temperature", above=0.0, most=5000.0),
         tables=options.table or (),
         **values,
     )
+    return _with_solids(made, options)
+
+
+def _with_solids(made: Liquid, options: argparse.Namespace) -> Liquid:
+    """Return the liquid with the suspended solids that the options describe."""
+    solids = shared.quantity(options, "solids", "ratio", least=0.0, most=1.0)
+    packing = shared.quantity(options, "max_packing", "ratio", above=0.0, most=1.0)
+    density = shared.quantity(options, "particle_density", "density", least=1.0, most=3e4)
+    if solids is None:
+        extra = "--max-packing" if packing is not None else "--particle-density" if density is not None else ""
+        if extra:
+            raise InputError(f"{extra}: given without --solids; expected both, or neither")
+        return made
+    if packing is None:
+        raise InputError("--solids: given without --max-packing; expected both, such as --solids 0.35 --max-packing 0.64")
+    from containment.given.slurry import slurry
+
+    return slurry(made, solids=solids, max_packing=packing, particle_density=density)
 
 
 def run(options: argparse.Namespace) -> int:

@@ -15,7 +15,9 @@ _PACKING_ERROR: Final = 0.02  # how well the closest packing is known, common pr
 _THINS_FROM: Final = 0.3  # volume fraction from which suspensions thin with shear, common practice
 
 
-def slurry(liquid: Liquid, *, solids: Any, max_packing: Any, particle_density: Any, intrinsic: Any = 2.5) -> Liquid:
+def slurry(
+    liquid: Liquid, *, solids: Any, max_packing: Any, particle_density: Any = None, intrinsic: Any = 2.5
+) -> Liquid:
     """Return a liquid with solids in it as one liquid; its surface tension and vapour pressure stay the liquid's.
 
     Parameters
@@ -24,8 +26,8 @@ def slurry(liquid: Liquid, *, solids: Any, max_packing: Any, particle_density: A
         Newtonian.
     solids, max_packing : str or pint.Quantity or float
         Volume fraction of solids and that of their closest packing.
-    particle_density : str or pint.Quantity or float
-        kg/m^3 as a plain number.
+    particle_density : str or pint.Quantity or float, optional
+        kg/m^3 as a plain number; where it is left out the density stays the liquid's, and the slurry says so.
     intrinsic : float
         Intrinsic viscosity: 2.5 for spheres, 3 to 5 for grains with corners.
 
@@ -47,7 +49,11 @@ def slurry(liquid: Liquid, *, solids: Any, max_packing: Any, particle_density: A
         raise InputError(f"solids: {liquid.name} is not Newtonian; the law for suspensions needs a Newtonian liquid")
     phi = si_value(solids, "ratio", "solids", least=0.0, most=1.0)
     packed = si_value(max_packing, "ratio", "max packing", above=0.0, most=1.0)
-    heavy = si_value(particle_density, "density", "particle density", least=1.0, most=3e4)
+    heavy = liquid.density
+    mixed = "taken as the liquid's: no particle density is given"
+    if particle_density is not None:
+        heavy = si_value(particle_density, "density", "particle density", least=1.0, most=3e4)
+        mixed = "mixed by volume from liquid and particles"
     shape = si_value(intrinsic, "ratio", "intrinsic viscosity", least=1.0, most=100.0)
     viscosity = float(suspension_viscosity(liquid.viscosity, solids=phi, max_packing=packed, intrinsic=shape))
     by_solids, by_packing = viscosity_sensitivity(solids=phi, max_packing=packed, intrinsic=shape)
@@ -61,6 +67,8 @@ def slurry(liquid: Liquid, *, solids: Any, max_packing: Any, particle_density: A
     )
     if phi >= _THINS_FROM:
         sentence += " At this fraction it thins with shear, so the layer may flow more easily while it is shaken."
+    if particle_density is None:
+        sentence += " Its density is taken as the liquid's: heavier solids make it fall sooner; give the particle density."
     return dataclasses.replace(
         liquid,
         name=f"{liquid.name} with {100.0 * phi:.3g} vol% solids",
@@ -71,6 +79,6 @@ def slurry(liquid: Liquid, *, solids: Any, max_packing: Any, particle_density: A
         sources={
             **liquid.sources,
             "viscosity": f"{law} over: {liquid.sources.get('viscosity', 'given by the user')}",
-            "density": "mixed by volume from liquid and particles",
+            "density": mixed,
         },
     )

@@ -1,5 +1,6 @@
 """Suspensions: limits known from elsewhere, scaling, refusals; the slurry as a liquid."""
 
+import json
 import math
 
 import numpy as np
@@ -8,6 +9,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from containment.errors import InputError
+from containment.faces.command import main
 from containment.given.liquid import Liquid
 from containment.given.slurry import slurry
 from containment.physics.suspension import suspension_density, suspension_viscosity, viscosity_sensitivity
@@ -94,3 +96,44 @@ def test_slurry_refuses_a_liquid_that_is_not_newtonian():
     base = Liquid(density=1e3, viscosity=1.0, surface_tension=0.07, rheology={"model": "power-law"})
     with pytest.raises(InputError, match="not Newtonian"):
         slurry(base, solids=0.3, max_packing=0.64, particle_density=2500.0)
+
+
+def test_slurry_without_particle_density_says_so():
+    base = Liquid(density=1e3, viscosity=1.0, surface_tension=0.07)
+    made = slurry(base, solids=0.2, max_packing=0.64)
+    assert made.density == 1e3
+    assert "no particle density" in made.sources["density"]
+    assert "give the particle density" in made.hazards[-1][1]
+
+
+SLURRY = ["liquid", "glycerol", "--cylinder", "70mm", "--depth", "30mm", "--json"]
+
+
+def test_solids_reach_the_verdict(capsys):
+    main([*SLURRY, "--solids", "0.35", "--max-packing", "0.64", "--particle-density", "2500kg/m**3"])
+    with_solids = json.loads(capsys.readouterr().out)
+    main(SLURRY)
+    without = json.loads(capsys.readouterr().out)
+    # (1 - 0.35/0.64)^-1.6 = exp(1.6 * 0.79159)
+    assert with_solids["liquid"]["viscosity_Pa_s"] / without["liquid"]["viscosity_Pa_s"] == pytest.approx(3.5486, rel=1e-4)
+    assert with_solids["liquid"]["density_kg_m3"] == pytest.approx(0.65 * without["liquid"]["density_kg_m3"] + 0.35 * 2500.0)
+    assert "suspension" in [caution["topic"] for caution in with_solids["cautions"]]
+
+
+@pytest.mark.parametrize(
+    ("options", "said"),
+    [
+        (["--solids", "0.35"], "--max-packing"),
+        (["--max-packing", "0.64"], "--solids"),
+        (["--particle-density", "2500kg/m**3"], "--solids"),
+        (["--solids", "0.7", "--max-packing", "0.64"], "solids: 0.7"),
+        (["--solids", "2", "--max-packing", "0.64"], "--solids"),
+        (["--solids", "0.3", "--max-packing", "0"], "--max-packing"),
+    ],
+)
+def test_bad_solids_are_one_line_and_status_2(capsys, options, said):
+    assert main([*SLURRY, *options]) == 2
+    captured = capsys.readouterr()
+    assert captured.out == ""
+    assert said in captured.err
+    assert captured.err.count("\n") == 1
