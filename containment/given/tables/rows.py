@@ -25,7 +25,7 @@ _MOST_BYTES: Final = 2_000_000
 _LONGEST_CELL: Final = 2_000
 _MOST_ROWS: Final = 20_000
 _MARKUP: Final = re.compile(r"<[A-Za-z/!?]|&#|\[/?[a-z@#][^\]]*\]", re.IGNORECASE)
-_FORMULA: Final = re.compile(r"\s*[=+@|]|\s*-(?!\s*\.?\d)")
+_FORMULA: Final = re.compile(r"\s*[=@|]|\s*[+-](?!\s*(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?(?:[\s:;%]|$))")
 _HEADER: Final = re.compile(r"\s*([A-Za-z_]+)\s*(?:\[([^\]]*)\])?\s*")
 _NUMBER: Final = re.compile(r"[+-]?(?:\d+\.?\d*|\.\d+)(?:[eE][+-]?\d+)?")
 
@@ -182,7 +182,7 @@ def _look_for_hostile_cells(row: Row, faults: Faults) -> None:
             faults.add(row.line, column, f"has {len(cell)} characters; at most {_LONGEST_CELL} are allowed")
         elif not cell.isprintable():
             faults.add(row.line, column, f"{shown(cell)} holds control characters; expected plain text")
-        elif _FORMULA.match(cell) and not _NUMBER.match(cell.lstrip()):
+        elif _FORMULA.match(cell):
             reason = f"{shown(cell)} looks like a spreadsheet formula; expected plain text or a number"
             faults.add(row.line, column, reason)
         elif _MARKUP.search(cell):

@@ -71,7 +71,12 @@ def factor_of(unit: str, kind: str) -> float:
     (0.001, 0.001)
     """
     known = _KNOWN.get((kind, unit))
-    return known if known is not None else parse_quantity(f"1 {unit}", kind, "unit")
+    if known is not None:
+        return known
+    try:
+        return parse_quantity(f"1 {unit}", kind, "unit")
+    except InputError as error:
+        raise InputError(str(error).removeprefix("unit: ").replace(f"'1 {unit}'", f"'{unit}'", 1)) from error
 
 
 def temperature_of(text: str) -> float:
@@ -86,7 +91,7 @@ def temperature_of(text: str) -> float:
     if match and match.group(2) == "degC":
         value = float(match.group(1)) - ABSOLUTE_ZERO_CELSIUS
     else:
-        value = parse_quantity(text, "temperature", "temperature")
+        value = _converted(text, "temperature")
     if not 0.0 < value <= 5000.0:
         raise InputError(f"'{text[:40]}' is not a temperature between absolute zero and 5000 K")
     return value
@@ -103,4 +108,11 @@ def ratio_of(text: str) -> float:
     match = _QUANTITY.fullmatch(text)
     if match and match.group(2) in ("", "%"):
         return float(match.group(1)) * (0.01 if match.group(2) else 1.0)
-    return parse_quantity(text, "ratio", "ratio")
+    return _converted(text, "ratio")
+
+
+def _converted(text: str, kind: str) -> float:
+    try:
+        return parse_quantity(text, kind, kind)
+    except InputError as error:
+        raise InputError(str(error).removeprefix(f"{kind}: ")) from error
