@@ -96,7 +96,7 @@ def test_every_property_says_where_it_comes_from(entry):
         if of.source_read:
             assert "read" in of.source or "chemicals" in of.source or "CoolProp" in of.source
         else:
-            assert any(word in of.source for word in ("memory", "estimate", "typical", "common practice", "read", "curve"))
+            assert any(word in of.source for word in ("memory", "estimate", "typical", "common practice", "read", "this entry"))
 
 
 def test_uncertainty_covers_at_least_what_memory_allows(entry):
