@@ -140,6 +140,7 @@ def run(options: argparse.Namespace) -> int:
         drive=drive,
         surroundings=surroundings_from(options),
         shape=shared.shape_from(options) if motion is None else None,
+        ranges=options.detail,
         margin_factor=MARGIN_FACTOR if factor is None else factor,
     )
     if options.json:

@@ -65,6 +65,7 @@ def liquid_screen(verdict: Verdict, *, plain: bool = False, detail: bool = False
     if verdict.window is not None:
         _corners(screen, verdict)
     _at_rest(screen, verdict)
+    _held_over(screen, verdict)
     screen.limits(verdict.limits)
     screen.cautions(verdict.cautions)
     screen.heading("Assumed")
@@ -199,6 +200,26 @@ def _corners(screen: Screen, verdict: Verdict) -> None:
         )
         screen.rows(facts)
         screen.text("At an edge nothing is left in hand: give --frequency and a size to judge your own point.")
+
+
+def _held_over(screen: Screen, verdict: Verdict) -> None:
+    over = verdict.held_over
+    if over is not None:
+        screen.heading("Still held over")
+        rows = [("viscosity", f"{over.viscosity[0]:.3g} to {over.viscosity[1]:.3g} Pa s, all else unchanged")]
+        if over.temperature is not None:
+            low, high = (kelvin + ABSOLUTE_ZERO_CELSIUS for kelvin in over.temperature)
+            rows.append(("temperature", f"{low:.3g} to {high:.3g} degC; mind warming by shear and by a heated vessel"))
+        screen.rows(rows)
+    if verdict.question == "minimum drive" and verdict.window is not None and not verdict.drive.stated:
+        screen.heading("Generic drives that could")
+        choices = verdict.drives_that_could
+        if choices:
+            screen.rows(
+                [(c.name, f"x {c.margin:.3g}", f"at {c.frequency:.3g} Hz") for c in choices], right=(1, 2)
+            )
+        else:
+            screen.text("None of the classes in the drive table.")
 
 
 def _at_rest(screen: Screen, verdict: Verdict) -> None:

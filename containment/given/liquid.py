@@ -3,13 +3,16 @@
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from pathlib import Path
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from containment.constants import ABSOLUTE_ZERO_CELSIUS
 from containment.errors import InputError
 from containment.given.quantities import si_value
 
-__all__ = ["Liquid", "liquid"]
+if TYPE_CHECKING:
+    from containment.given.tables import LiquidEntry
+
+__all__ = ["Liquid", "liquid", "liquid_at"]
 
 _BOUNDS = {
     # property: (kind, least, most), SI; far outside what is poured
@@ -43,6 +46,8 @@ class Liquid:
         Source of each property by its name.
     rheology : mapping or None
         Model and parameters of a liquid that is not Newtonian.
+    entry : LiquidEntry or None
+        Table entry that all properties come from.
 
     Raises
     ------
@@ -66,6 +71,7 @@ class Liquid:
     flash_point: float | None = None
     sources: Mapping[str, str] = field(default_factory=dict)
     rheology: Mapping[str, Any] | None = None
+    entry: Any = field(default=None, repr=False, compare=False)
 
     def __post_init__(self) -> None:
         for name, (kind, least, most) in _BOUNDS.items():
@@ -127,39 +133,51 @@ def liquid(
         return Liquid(**given, temperature=kelvin, sources=dict.fromkeys(given, "given by the user"))
     from containment.given.tables import liquid_entry
 
-    entry = liquid_entry(name, tables=[Path(table) for table in tables])
+    return liquid_at(liquid_entry(name, tables=[Path(table) for table in tables]), kelvin, overrides=given)
+
+
+def liquid_at(entry: "LiquidEntry", temperature: float, *, overrides: Mapping[str, Any] | None = None) -> Liquid:
+    """Return the liquid of a table entry at a temperature, K, single properties overridden where given.
+
+    Raises
+    ------
+    InputError
+        A temperature outside the range of a property that is not overridden.
+    """
     values: dict[str, Any] = {}
     sources: dict[str, str] = {}
     uncertainty: dict[str, float] = {}
-    for key, override in given.items():
-        if override is not None:
-            values[key], sources[key] = override, "given by the user"
+    overrides = overrides or {}
+    for key in _BOUNDS:
+        if overrides.get(key) is not None:
+            values[key], sources[key] = overrides[key], "given by the user"
             continue
         law = getattr(entry, key)
         try:
-            values[key] = float(law.value(kelvin))
+            values[key] = float(law.value(temperature))
         except InputError as error:
             low, high = (kelvin_end + ABSOLUTE_ZERO_CELSIUS for kelvin_end in law.range_K)
             raise InputError(
-                f"temperature: {kelvin + ABSOLUTE_ZERO_CELSIUS:.4g} degC is outside the range of the {key.replace('_', ' ')} "
-                f"of {entry.name}; the table holds from {low:.4g} to {high:.4g} degC"
+                f"temperature: {temperature + ABSOLUTE_ZERO_CELSIUS:.4g} degC is outside the range of the "
+                f"{key.replace('_', ' ')} of {entry.name}; the table holds from {low:.4g} to {high:.4g} degC"
             ) from error
         sources[key] = law.source
         uncertainty[key] = float(law.relative_uncertainty)
     pressure: float | None = 0.0
     if entry.vapour_pressure is not None:
         low, high = entry.vapour_pressure.range_K
-        pressure = float(entry.vapour_pressure.value(kelvin)) if low <= kelvin <= high else None
+        pressure = float(entry.vapour_pressure.value(temperature)) if low <= temperature <= high else None
     return Liquid(
         **values,
         name=entry.name,
-        temperature=kelvin,
+        temperature=temperature,
         vapour_pressure=pressure,
         uncertainty=uncertainty,
         hazards=tuple(_hazard(item) for item in entry.hazards),
         flash_point=entry.flash_point_K,
         sources=sources,
         rheology=entry.rheology,
+        entry=None if any(value is not None for value in overrides.values()) else entry,
     )
 
 

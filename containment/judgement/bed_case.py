@@ -1,5 +1,6 @@
 """A granular bed in its vessel and setting, with the drive and what the process asks for."""
 
+import math
 from dataclasses import dataclass, replace
 from typing import Any, Final
 
@@ -179,16 +180,14 @@ class BedCase:
 
     @property
     def widest(self) -> float | None:
-        """Widest horizontal extent, m; None where the vessel has no end."""
+        """Widest horizontal extent, m: diameter or diagonal; None where the vessel has no end."""
         match self.vessel:
             case Cylinder():
                 return float(self.vessel.diameter)
             case Annulus():
                 return float(self.vessel.outer_diameter)
             case Box():
-                return float(max(self.vessel.width, self.vessel.length))
-            case Slot():
-                return float(self.vessel.width)
+                return float(math.hypot(self.vessel.width, self.vessel.length))
         return None
 
     @property

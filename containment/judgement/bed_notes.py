@@ -114,6 +114,7 @@ def bed_assumptions(case: BedCase, *, moisture: float | None = None) -> tuple[st
     if not material.free_flowing:
         spread = case.strength_margin
         lines.append(f"strengths of powders scatter: a factor of {spread:.3g} is asked for")
+        lines.append("the yield strength is that of the powder near the opening, where little weighs on it")
         lines.append("tensile strength from the yield strength by a straight yield locus at the angle of repose, "
                      f"{math.degrees(material.angle_of_repose):.0f} degrees")
     if moisture is not None:

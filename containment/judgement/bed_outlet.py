@@ -2,6 +2,7 @@
 
 from containment.constants import STANDARD_GRAVITY
 from containment.judgement.bed_case import BedCase, Judged, Mechanism, better
+from containment.judgement.bed_upright import QUIET_GAMMA
 from containment.judgement.findings import Answer, seconds_text
 from containment.physics.bed.arching import ARCH_RATIO, grains_before_arch, lasting_arch_outlet, passes_outlet
 from containment.physics.bed.cohesion import arch_outlet, arch_shape_factor
@@ -38,8 +39,8 @@ def judge_outlet(case: BedCase) -> Judged:
     reason = words[binding.name]
     if answer is Answer.MARGINAL and binding is supports[1]:
         reason = (
-            "the arch would bear the load, but the bed lifts off and lands on it in each stroke"
-            if case.gamma >= 1.0 and case.graded(binding.ratio or 0.0) is Answer.HELD
+            "the arch would bear the load, but the bed may lift off and land on it in each stroke"
+            if case.gamma > QUIET_GAMMA and case.graded(binding.ratio or 0.0) is Answer.HELD
             else case.shortfall("the cohesive arch", binding.ratio or 0.0)
         )
     if answer is Answer.MARGINAL and binding is supports[0]:
@@ -80,9 +81,9 @@ def _cohesive_arch(case: BedCase) -> Mechanism:
         remark = "free-flowing: no strength to arch with"
     else:
         answer = case.graded(ratio)
-        if case.gamma >= 1.0 and answer is Answer.HELD:
+        if case.gamma > QUIET_GAMMA and answer is Answer.HELD:
             answer = Answer.MARGINAL
-            remark = "above Gamma 1 the bed lands on the arch; that shock is not covered"
+            remark = f"above Gamma {QUIET_GAMMA:g} the bed may lift and land on the arch; that shock is not covered"
     return Mechanism(
         name="cohesive arch", answer=answer, value=size, bound=span, unit="m", ratio=ratio,
         source="Jenike 1964, textbook form read; shaken: force balance", remark=remark,
@@ -119,7 +120,7 @@ def _discharge(case: BedCase) -> list[Mechanism]:
         rate = SHAKEN_FACTOR * float(discharge_rate(outlet=size, **common))
         unit, source = "kg/s", "Beverloo et al. 1961, coefficients from memory"
     else:
-        length = case.widest if case.widest is not None and case.vessel.kind != "slot" else 1.0
+        length = case.widest if case.widest is not None else 1.0
         rate = SHAKEN_FACTOR * float(slot_discharge_rate(width=size, length=length, **common))
         unit, source = "kg/s", "Nedderman 1992, from memory"
         if case.vessel.kind in ("slot", "unbounded"):

@@ -54,14 +54,7 @@ def judge_upright(case: BedCase) -> Judged:
         ),
     ]  # fmt: skip
     if gamma > 1.0:
-        high = rise + _heap(case)
-        found.append(
-            _height(
-                "heap against one wall, thrown", high, room, held=room > high, possible=True,
-                source="angle of repose as a bound; heaping: Hsiau & Pan 1998, opening read",
-                remark="gas that the bed pumps drives the heaping",
-            )
-        )  # fmt: skip
+        found.append(_heap(case, rise, room))
     answer = worse(*(m.answer for m in found[1:] if m.answer is not None))
     last = next(m for m in found[1:] if m.answer is answer)
     if answer is Answer.HELD:
@@ -95,9 +88,17 @@ def _take_off(case: BedCase) -> Mechanism:
     )  # fmt: skip
 
 
-def _heap(case: BedCase) -> float:
+def _heap(case: BedCase, rise: float, room: float) -> Mechanism:
     width = case.widest
-    return float(heap_rise(width=width, angle=case.material.angle_of_repose)) if width is not None else 0.0
+    name, source = "heap against one wall, thrown", "angle of repose as a bound; heaping: Hsiau & Pan 1998, opening read"
+    if width is None:
+        return Mechanism(
+            name=name, answer=Answer.MARGINAL, value=None, bound=room, unit="m", source=source,
+            remark="a vessel without end does not bound the heap",
+        )  # fmt: skip
+    high = rise + float(heap_rise(width=width, angle=case.material.angle_of_repose))
+    remark = "gas that the bed pumps drives the heaping"
+    return _height(name, high, room, held=room > high, possible=True, source=source, remark=remark)
 
 
 def _height(

@@ -18,7 +18,7 @@ from containment.judgement.bed_case import BED_MARGIN, BedCase, Judged, Mechanis
 from containment.judgement.bed_hanging import judge_open_bottom, judge_pocket
 from containment.judgement.bed_notes import bed_assumptions, bed_cautions
 from containment.judgement.bed_outlet import judge_outlet
-from containment.judgement.bed_upright import judge_upright
+from containment.judgement.bed_upright import QUIET_GAMMA, judge_upright
 from containment.judgement.findings import Answer, Caution, Limit
 from containment.judgement.limits import drive_limits
 
@@ -280,7 +280,7 @@ def _largest_outlet(case: BedCase, judged: Judged) -> float | None:
     if case.setting.kind in ("outlet", "slot_outlet"):
         arch, coarse = named["cohesive arch"], named["grains too coarse for the outlet"]
         sizes = [0.0]
-        if case.gamma < 1.0 and not case.material.free_flowing and case.material.strength_measured:
+        if case.gamma <= QUIET_GAMMA and not case.material.free_flowing and case.material.strength_measured:
             sizes.append((arch.bound or 0.0) / case.strength_margin)
         if case.material.one_size:
             sizes.append((coarse.bound or 0.0) / case.margin)

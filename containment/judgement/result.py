@@ -11,6 +11,7 @@ from containment.given.vessel import Vessel
 from containment.judgement.case import Allowance, Unshaken
 from containment.judgement.findings import Answer, Caution, Limit
 from containment.judgement.operating_point import OperatingPoint
+from containment.judgement.ranges import DriveChoice, HeldOver
 from containment.judgement.window import HoldingPoint, HoldingWindow
 
 __all__ = ["Verdict"]
@@ -34,6 +35,10 @@ class Verdict:
         Whether the stated uncertainty of the properties reaches across an edge.
     window : HoldingWindow or None
         Where the layer would be held: without a drive point, or with one that does not hold.
+    held_over : HeldOver or None
+        Ranges of viscosity and temperature over which the drive point holds, where asked for.
+    drives_that_could : tuple of DriveChoice
+        Generic classes of drives that could hold the layer, where no drive is stated.
     """
 
     answer: Answer
@@ -57,6 +62,8 @@ class Verdict:
     cautions: tuple[Caution, ...]
     assumptions: tuple[str, ...]
     worst_mode: str
+    held_over: HeldOver | None = None
+    drives_that_could: tuple[DriveChoice, ...] = ()
 
     @property
     def held(self) -> bool:
@@ -103,6 +110,8 @@ class Verdict:
                 else None
             ),
             "operating_point": None,
+            "held_over": self.held_over.to_dict() if self.held_over else None,
+            "drives_that_could": [choice.to_dict() for choice in self.drives_that_could],
             "averaged_estimate_m_s2": _finite(self.averaged_estimate),
             "limits": [limit.to_dict() for limit in self.limits],
             "cautions": [caution.to_dict() for caution in self.cautions],

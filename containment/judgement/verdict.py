@@ -21,6 +21,7 @@ from containment.judgement.findings import Answer, Limit
 from containment.judgement.limits import drive_limits, pull_off_acceleration, pull_off_limit
 from containment.judgement.no_window import why_no_window
 from containment.judgement.operating_point import judged_point
+from containment.judgement.ranges import drives_that_could, held_over
 from containment.judgement.result import Verdict
 from containment.judgement.window import SEARCH_RANGE, HoldingWindow, search_window
 
@@ -47,6 +48,7 @@ def assess(
     shape: Waveform | None = None,
     ambient_pressure: Any = None,
     margin_factor: Any = MARGIN_FACTOR,
+    ranges: bool = False,
 ) -> Verdict:
     """Return the verdict on a layer: at a drive point, or, without one, whether any drive within the limits holds it.
 
@@ -72,6 +74,8 @@ def assess(
         Absolute, Pa; in place of that of the surroundings.
     margin_factor : float
         Ratio to either edge below which the verdict is marginal.
+    ranges : bool
+        Whether to look for the viscosity and the temperature over which a drive point still holds.
 
     Raises
     ------
@@ -97,7 +101,7 @@ def assess(
     form = motion.waveform if motion is not None else shape or PURE_SINE
     case = _case(liquid, vessel, bear, drive, _around(surroundings, ambient_pressure), form)
     if motion is not None:
-        return _at_a_point(case, motion, drive, factor)
+        return _at_a_point(case, motion, drive, factor, ranges=ranges)
     if isinstance(vessel, Box) and vessel.contact_line == "pinned":
         raise InputError("contact line: a pinned box is judged at a drive point only; give its frequency and size")
     return _minimum_drive(case, drive, factor)
@@ -204,7 +208,7 @@ def _window(
     return why_no_window(case, window, drive)
 
 
-def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float) -> Verdict:
+def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float, *, ranges: bool) -> Verdict:
     level = motion.acceleration / motion.waveform.peak_acceleration / motion.angular_frequency**2
     if level > case.amplitude_bound * (1.0 + 1e-9):
         raise InputError(
@@ -256,6 +260,7 @@ def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float) -
         averaged_estimate=averaged_estimate(case, motion.frequency), limits=(*limits, *beside),
         cautions=case_cautions(case, motion.frequency, a), assumptions=assumptions(case, drive),
         worst_mode=case.spectrum.mode_name(worst) if math.isfinite(worst) else "",
+        held_over=held_over(case, frequency=motion.frequency, acceleration=a) if ranges and point.inside else None,
     )  # fmt: skip
 
 
@@ -309,6 +314,7 @@ def _minimum_drive(case: Case, drive: DriveLimits, factor: float) -> Verdict:
         unshaken=case.unshaken, holds_unshaken=rests, window=window, strict_window=strict, point=point,
         averaged_estimate=averaged_estimate(case, at), limits=tuple(limits), cautions=tuple(cautions),
         assumptions=assumptions(case, drive), worst_mode="",
+        drives_that_could=drives_that_could(case, window) if window is not None and not drive.stated else (),
     )  # fmt: skip
 
 
