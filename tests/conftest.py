@@ -1,6 +1,12 @@
 """Options and the closing table of the audit."""
 
-import pytest
+import os
+
+# one thread a process: the matrices are small, and pytest-xdist already fills the cores
+for _name in ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS"):
+    os.environ.setdefault(_name, "1")
+
+import pytest  # noqa: E402
 
 AUDIT_LINES = pytest.StashKey[list[str]]()
 
