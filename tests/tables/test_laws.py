@@ -106,7 +106,7 @@ def test_sucrose_against_handbook_viscosities():
 
 POINTS = st.lists(
     st.tuples(st.floats(0.1, 20.0), st.floats(-50.0, 50.0)), min_size=2, max_size=9
-).map(lambda steps: (np.cumsum([s for s, _ in steps]), np.array([y for _, y in steps])))
+).map(lambda steps: (np.cumsum([s for s, _ in steps]), np.round([y for _, y in steps], 6)))  # no denormal numbers
 
 
 @given(POINTS)

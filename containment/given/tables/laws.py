@@ -131,7 +131,7 @@ def shape_preserving(x: Array, y: Array, at: Any) -> Array:
     else:
         same = slope[:-1] * slope[1:] > 0.0
         w1, w2 = 2.0 * h[1:] + h[:-1], h[1:] + 2.0 * h[:-1]
-        with np.errstate(divide="ignore", invalid="ignore"):
+        with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
             d[1:-1] = np.where(same, (w1 + w2) / (w1 / slope[:-1] + w2 / slope[1:]), 0.0)
         d[0] = _end_slope(h[0], h[1], slope[0], slope[1])
         d[-1] = _end_slope(h[-1], h[-2], slope[-1], slope[-2])
