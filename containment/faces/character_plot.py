@@ -34,17 +34,17 @@ def character_plot(
     Returns
     -------
     list of str
-        Plain ASCII, all shorter than `width` + 14 characters.
+        Plain ASCII, none longer than `width` + 15 characters.
 
     Examples
     --------
     >>> for line in character_plot([0.0, 1.0, 2.0], [1.0, 10.0, 100.0], width=11, height=3, logarithmic=True):
     ...     print(line)
-          100 |          *
-           10 |     *
-            1 |*
-              +-----------
-               0        2
+              100 |          *
+               10 |     *
+                1 |*
+                  +-----------
+                   0        2
     """
     scaled = [math.log10(value) for value in y] if logarithmic else list(y)
     low, high = min(scaled), max(scaled)
