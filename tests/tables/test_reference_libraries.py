@@ -102,7 +102,8 @@ VISCOSITIES = [
     ("ethanol", vdi_viscosity, 0.03),
     ("ethanol", perry_viscosity, 0.03),
     ("cyclohexanol", perry_viscosity, 0.05),
-    ("benzyl alcohol", perry_viscosity, 1e-3),
+    ("benzyl alcohol", vdi_viscosity, 0.09),
+    ("benzyl alcohol", perry_viscosity, 0.08),  # two terms only
 ]
 
 
