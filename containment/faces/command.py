@@ -79,9 +79,12 @@ def _repeated(arguments: list[str]) -> list[str]:
 
 
 def _one_line(message: str) -> str:
-    """Return a message as one printable line of bounded length, whatever was typed."""
-    line = "".join(c if c.isprintable() else "?" for c in message)
-    return line if len(line) <= 400 else line[:397] + "..."
+    """Return a message as one printable line of bounded length, whatever was typed; the faults of a table are many."""
+    heading, *faults = message.splitlines() or [""]
+    joined = heading + ": " * bool(faults) + "; ".join(fault.strip() for fault in faults)
+    line = "".join(c if c.isprintable() else "?" for c in joined)
+    most = 6000 if faults else 400
+    return line if len(line) <= most else line[: most - 3] + "..."
 
 
 def _run(module: str, options: argparse.Namespace) -> int:

@@ -237,3 +237,14 @@ def test_plot_puts_ends_and_middle_where_they_belong():
     assert field[0].index("*") == 20
     assert field[2].index("*") == 10
     assert field[4].index("*") == 0
+
+
+def test_every_fault_of_a_table_is_told_in_one_line(table, tmp_path):
+    path = tmp_path / "faulty.csv"
+    rows = "".join(f"liquid,syrup {i},colour,,amber,,,,,,\n" for i in range(12))
+    path.write_text(HEADER + rows, encoding="utf-8")
+    status, out, err = table("--table", str(path))
+    assert (status, out) == (2, "")
+    assert err.count("\n") == 1
+    for line in range(2, 14):
+        assert f"line {line}, field" in err
