@@ -102,7 +102,7 @@ VISCOSITIES = [
     ("ethanol", vdi_viscosity, 0.03),
     ("ethanol", perry_viscosity, 0.03),
     ("cyclohexanol", perry_viscosity, 0.05),
-    ("benzyl alcohol", vdi_viscosity, 0.09),
+    ("benzyl alcohol", vdi_viscosity, 0.12),  # the three sources disagree; the table takes the middle one
     ("benzyl alcohol", perry_viscosity, 0.08),  # two terms only
 ]
 
