@@ -25,6 +25,8 @@ def judge_outlet(case: BedCase) -> Judged:
         if not case.material.free_flowing:
             binding = supports[1]
             reason = "the outlet is wider than the powder can arch over"
+            if (binding.ratio or 0.0) >= 1.0:
+                reason = "the bed lands on its arch in each stroke, and the arch has too little in hand for that shock"
         elif float(lasting_arch_outlet(diameter=case.material.d10)) > (case.setting.size or 0.0) > 0.0:
             binding = supports[2]
             reason = "each stroke unloads the grains' arch and breaks it" if _round(case) else (
@@ -40,7 +42,7 @@ def judge_outlet(case: BedCase) -> Judged:
     if answer is Answer.MARGINAL and binding is supports[1]:
         reason = (
             "the arch would bear the load, but the bed may lift off and land on it in each stroke"
-            if case.gamma > QUIET_GAMMA and case.graded(binding.ratio or 0.0) is Answer.HELD
+            if case.gamma > QUIET_GAMMA and case.material.strength_measured
             else case.shortfall("the cohesive arch", binding.ratio or 0.0)
         )
     if answer is Answer.MARGINAL and binding is supports[0]:
@@ -81,8 +83,8 @@ def _cohesive_arch(case: BedCase) -> Mechanism:
         remark = "free-flowing: no strength to arch with"
     else:
         answer = case.graded(ratio)
-        if case.gamma > QUIET_GAMMA and answer is Answer.HELD:
-            answer = Answer.MARGINAL
+        if case.gamma > QUIET_GAMMA:  # a shock of unknown size: nothing less than the full margin may still count
+            answer = Answer.MARGINAL if ratio >= case.strength_margin else Answer.NOT_HELD
             remark = f"above Gamma {QUIET_GAMMA:g} the bed may lift and land on the arch; that shock is not covered"
     return Mechanism(
         name="cohesive arch", answer=answer, value=size, bound=span, unit="m", ratio=ratio,

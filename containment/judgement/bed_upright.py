@@ -90,7 +90,7 @@ def _take_off(case: BedCase) -> Mechanism:
 
 def _heap(case: BedCase, rise: float, room: float) -> Mechanism:
     width = case.widest
-    name, source = "heap against one wall, thrown", "angle of repose as a bound; heaping: Hsiau & Pan 1998, opening read"
+    name, source = "heap thrown against one wall", "angle of repose as a bound; heaping: Hsiau & Pan 1998, opening read"
     if width is None:
         return Mechanism(
             name=name, answer=Answer.MARGINAL, value=None, bound=room, unit="m", source=source,
