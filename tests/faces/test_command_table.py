@@ -241,7 +241,7 @@ def test_plot_puts_ends_and_middle_where_they_belong():
 
 def test_every_fault_of_a_table_is_told_in_one_line(table, tmp_path):
     path = tmp_path / "faulty.csv"
-    rows = "".join(f"liquid,syrup {i},colour,,amber,,,,,,\n" for i in range(12))
+    rows = "".join(f"liquid,syrup,colour {i},,amber,,,,,,\n" for i in range(12))
     path.write_text(HEADER + rows, encoding="utf-8")
     status, out, err = table("--table", str(path))
     assert (status, out) == (2, "")
