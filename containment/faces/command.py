@@ -7,7 +7,7 @@ import sys
 from collections.abc import Sequence
 from typing import Final, NoReturn
 
-from containment.errors import ContainmentError
+from containment.errors import ContainmentError, NotComputableError
 
 __all__ = ["main"]
 
@@ -91,6 +91,9 @@ def _run(module: str, options: argparse.Namespace) -> int:
     try:
         status: int = importlib.import_module(module).run(options)
         sys.stdout.flush()
+    except NotComputableError as error:
+        sys.stderr.write(f"containment: not computable: {_one_line(str(error))}\n")
+        return 3
     except ContainmentError as error:
         sys.stderr.write(f"containment: {_one_line(str(error))}\n")
         return 2

@@ -18,6 +18,11 @@ def add_liquid(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--density", metavar="RHO", help="in place of the table's, such as 1261kg/m**3")
     group.add_argument("--viscosity", metavar="MU", help="dynamic, in place of the table's, such as 1.41Pa*s")
     group.add_argument("--surface-tension", metavar="GAMMA", help="in place of the table's, such as 63mN/m")
+    group.add_argument(
+        "--rheology",
+        metavar="MODEL:...",
+        help="not Newtonian, such as jeffreys:viscosity=10Pa*s,relaxation=10ms,retardation=2ms",
+    )
     group.add_argument("--table", metavar="FILE", action="append", help="a table of your own; may be repeated")
     group.add_argument("--solids", metavar="FRACTION", help="solids suspended in it, by volume, such as 0.35")
     group.add_argument("--max-packing", metavar="FRACTION", help="of these solids at their closest, such as 0.64")
@@ -101,6 +106,12 @@ def liquid_from(options: argparse.Namespace) -> Liquid:
         tables=options.table or (),
         **values,
     )
+    if options.rheology is not None:
+        import dataclasses
+
+        from containment.given.rheology import parse_rheology
+
+        made = dataclasses.replace(made, rheology=parse_rheology(options.rheology, "--rheology"))
     return _with_solids(made, options)
 
 

@@ -145,6 +145,7 @@ class Case:
             density=self.liquid.density, viscosity=self.liquid.viscosity, depth=self.vessel.depth, gravity=gravity,
             tension=self.liquid.surface_tension if below is None else around.interfacial_tension,
             film_modulus=film, below=None if below is None else (below.density, below.viscosity, around.below_depth),
+            rheology=self.liquid.rheology,
         )  # fmt: skip
 
     @cached_property

@@ -63,7 +63,7 @@ def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
     bear = case.allowance
     lines = [
         "linear theory: small slopes; a surface already far out of level, or splashed, may fall inside the window",
-        f"Newtonian liquid of one temperature, {_surface_text(case)}, no bubbles; rigid vessel moving vertically "
+        f"{_liquid_text(case)} of one temperature, {_surface_text(case)}, no bubbles; rigid vessel moving vertically "
         + ("as a sine" if case.waveform is PURE_SINE else "with the stated harmonics; accelerations are its peaks"),
         _wall_text(case),
         f"amplitudes up to {1e3 * case.amplitude_bound:g} mm (zero to peak) are searched",
@@ -112,3 +112,9 @@ def _wall_text(case: Case) -> str:
     if case.waveform is not PURE_SINE:
         return text + "drag of the side walls, a skin and tilt are not judged for this motion"
     return text + "the drag of the side walls counts against the lower edge and is left out of the upper one"
+
+
+def _liquid_text(case: Case) -> str:
+    if case.liquid.rheology is None:
+        return "Newtonian liquid"
+    return f"linearly viscoelastic liquid ({case.liquid.rheology['model']})"

@@ -80,6 +80,8 @@ def _wall_drag(case: Case, point: OperatingPoint) -> list[Limit]:
 
 def _covered(case: Case, point: OperatingPoint) -> list[Limit]:
     around = case.surroundings
+    if case.liquid.rheology is not None:
+        return []
     if around.surface is not None or around.film_modulus is not None or around.below is not None:
         return []
     edges = case.edges(np.array([point.frequency]), layer=case.layer_with(surface="covered"))
@@ -94,7 +96,7 @@ def _covered(case: Case, point: OperatingPoint) -> list[Limit]:
 
 def _tilt(case: Case, point: OperatingPoint) -> list[Limit]:
     vessel = case.vessel
-    if case.surroundings.below is not None or point.lower == 0.0 or not point.inside:
+    if case.surroundings.below is not None or point.lower == 0.0 or not point.inside or case.liquid.rheology is not None:
         return []
     from containment.physics import tilt
 

@@ -23,6 +23,7 @@ from containment.judgement.no_window import why_no_window
 from containment.judgement.operating_point import judged_point
 from containment.judgement.ranges import drives_that_could, held_over
 from containment.judgement.result import Verdict
+from containment.judgement.rheology import depends_on_shear, plug_limit, refuse_where_unknown, stand_ins
 from containment.judgement.window import SEARCH_RANGE, HoldingWindow, search_window
 
 __all__ = ["MARGIN_FACTOR", "Verdict", "assess", "holding_window"]
@@ -100,6 +101,8 @@ def assess(
         raise InputError("motion: its shape is given twice; give it with the motion")
     form = motion.waveform if motion is not None else shape or PURE_SINE
     case = _case(liquid, vessel, bear, drive, _around(surroundings, ambient_pressure), form)
+    if depends_on_shear(liquid):
+        return _sheared(case, motion, drive, factor)
     if motion is not None:
         return _at_a_point(case, motion, drive, factor, ranges=ranges)
     if isinstance(vessel, Box) and vessel.contact_line == "pinned":
@@ -168,16 +171,13 @@ def _case(
         raise InputError(
             "motion: a motion that is not a pure sine is not modelled for a pinned contact line or over trapped gas"
         )
-    if liquid.rheology is not None:
-        raise InputError(
-            f"liquid: {liquid.name} is not Newtonian; give the viscosity of a Newtonian stand-in with name 'custom'"
-        )
     if around.below is not None and not around.below.density < liquid.density:
         raise InputError(
             f"below: {around.below.name} of {around.below.density:.4g} kg/m^3 is not lighter than {liquid.name} of "
             f"{liquid.density:.4g} kg/m^3; the lower liquid must be the lighter one"
         )
     case = Case(liquid, vessel, bear, around, shape)
+    refuse_where_unknown(case)
     if drive.max_force is not None and case.product_mass is None:
         raise InputError(f"max force: a {vessel.kind} has no end, so the product has no mass; leave the force out")
     return case
@@ -206,6 +206,30 @@ def _window(
         sparse=case.vessel.contact_line == "pinned" or case.waveform is not PURE_SINE,
     )
     return why_no_window(case, window, drive)
+
+
+def _sheared(case: Case, motion: Motion | None, drive: DriveLimits, factor: float) -> Verdict:
+    """Judge a liquid whose viscosity depends on the shear rate: the worst of its Newtonian stand-ins."""
+    if motion is None:
+        raise InputError(
+            f"liquid: the viscosity of {case.liquid.name} depends on the shear rate; give a drive point (frequency, size)"
+        )
+    order = [Answer.NOT_HELD, Answer.MARGINAL, Answer.HELD]
+    judged = [
+        (name, _at_a_point(dataclasses.replace(case, liquid=liquid), motion, drive, factor, ranges=False))
+        for name, liquid in stand_ins(case, frequency=motion.frequency)
+    ]
+    name, worst = min(judged, key=lambda pair: order.index(pair[1].answer))
+    shown = ", ".join(f"{v.liquid.viscosity:.3g} Pa s {n}" for n, v in judged)
+    plug = plug_limit(case, motion.acceleration)
+    answer, reason = worst.answer, f"{worst.reason} (with the viscosity {name})"
+    if answer is Answer.HELD:  # the shear rate is an estimate, so that it cannot carry a clean answer
+        answer = Answer.MARGINAL
+        reason = "held with each viscosity tried, but the shear rate that the layer sees is an estimate"
+    return dataclasses.replace(
+        worst, answer=answer, reason=reason, limits=(*worst.limits, *([plug] if plug else [])),
+        assumptions=(*worst.assumptions, f"viscosity that depends on the shear rate, taken as {shown}; the worst counts"),
+    )  # fmt: skip
 
 
 def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float, *, ranges: bool) -> Verdict:

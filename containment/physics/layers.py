@@ -1,6 +1,7 @@
 """The models of a layer, chosen by what is on it and under it."""
 
-from typing import Protocol
+from collections.abc import Callable, Mapping
+from typing import Any, Protocol
 
 import numpy as np
 import numpy.typing as npt
@@ -35,6 +36,7 @@ def layer_model(
     gravity: float,
     film_modulus: float | None = None,
     below: tuple[float, float, float] | None = None,
+    rheology: Mapping[str, Any] | None = None,
 ) -> LayerModel:
     """Return the model of a layer, SI.
 
@@ -46,6 +48,8 @@ def layer_model(
         Dilational modulus of a film on the surface, N/m; infinite for one that does not stretch.
     below : tuple of float, optional
         Density, viscosity and depth of a second liquid beyond the surface, down to a rigid lid.
+    rheology : mapping, optional
+        Model and parameters of a linearly viscoelastic liquid, in place of the viscosity.
     """
     if below is not None:
         from containment.physics.two_liquids import TwoLiquids
@@ -53,6 +57,19 @@ def layer_model(
         return TwoLiquids(
             layer_density=density, layer_viscosity=viscosity, layer_depth=depth, beyond_density=below[0],
             beyond_viscosity=below[1], beyond_depth=below[2], interfacial_tension=tension, gravity=gravity,
+        )  # fmt: skip
+    if rheology is not None:
+        from containment.physics.viscoelastic import ComplexViscosity, ViscoelasticLayer
+
+        makers: dict[str, Callable[..., ComplexViscosity]] = {
+            "maxwell": ComplexViscosity.maxwell, "jeffreys": ComplexViscosity.jeffreys,
+            "kelvin-voigt": ComplexViscosity.kelvin_voigt,
+        }  # fmt: skip
+        make = makers[rheology["model"]]
+        keys = ("viscosity", "relaxation", "retardation", "modulus")
+        return ViscoelasticLayer(
+            density=density, surface_tension=tension, depth=depth, gravity=gravity,
+            liquid=make(**{key: float(rheology[key]) for key in keys if key in rheology}),
         )  # fmt: skip
     common = {
         "density": density, "viscosity": viscosity, "surface_tension": tension, "depth": depth, "gravity": gravity,

@@ -6,6 +6,7 @@ import numpy as np
 
 from containment.constants import ABSOLUTE_ZERO_CELSIUS
 from containment.errors import InputError
+from containment.given.rheology import MODELS as RHEOLOGY_MODELS
 from containment.given.tables.entries import LiquidEntry, Property
 from containment.given.tables.faults import shown
 from containment.given.tables.fields import Fields
@@ -13,7 +14,7 @@ from containment.given.tables.laws import LAWS
 from containment.given.tables.rows import Row
 from containment.given.tables.units import factor_of, number_of, temperature_of
 
-__all__ = ["LIQUID_FIELDS", "LIQUID_PROPERTIES", "RHEOLOGY_MODELS", "liquid_from_rows"]
+__all__ = ["LIQUID_FIELDS", "LIQUID_PROPERTIES", "liquid_from_rows"]
 
 LIQUID_PROPERTIES: Final = {
     # field: (kinds of unit that state it, least, most), SI
@@ -28,18 +29,6 @@ LIQUID_FIELDS: Final = (
     *LIQUID_PROPERTIES, "title", "synonym", "hazard", "note", "flash_point", "vapour_pressure_note", "rheology",
 )  # fmt: skip
 """Fields that a liquid may have."""
-
-RHEOLOGY_MODELS: Final = {
-    "maxwell": ("viscosity", "relaxation"),
-    "jeffreys": ("viscosity", "relaxation", "retardation"),
-    "kelvin-voigt": ("viscosity", "modulus"),
-    "carreau": ("zero_shear", "infinite_shear", "time", "index"),
-    "cross": ("zero_shear", "infinite_shear", "time", "exponent"),
-    "power-law": ("consistency", "index"),
-    "herschel-bulkley": ("yield_stress", "consistency", "index"),
-}
-"""Models of a liquid that is not Newtonian and their parameters in SI, as the physics names them."""
-
 
 def liquid_from_rows(fields: Fields) -> LiquidEntry | None:
     """Return the liquid, or None where a property is missing or faulty."""
