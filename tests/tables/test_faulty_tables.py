@@ -1,6 +1,7 @@
 """Faulty and hostile tables: every fault in one message, with its line and column, and never anything but InputError."""
 
 import re
+from pathlib import Path
 
 import pytest
 from hypothesis import given, settings
@@ -245,6 +246,9 @@ def test_hostile_names_stay_on_one_line_of_print(tmp_path):
 def test_places_that_are_no_files(tmp_path):
     assert "not found, or not a file" in faults_of(tmp_path)
     assert "cannot be read" in faults_of(tmp_path / "nothing.csv")
+    assert "cannot be read" in faults_of(tmp_path / ("n" * 5000 + ".csv"))
+    assert "not a name of a file" in faults_of(tmp_path / "null\0.csv")
+    assert "not found, or not a file" in faults_of(Path("/dev/null"))
     other = tmp_path / "own.xlsx"
     other.write_text("x")
     assert "expected .csv or .toml" in faults_of(other)

@@ -120,11 +120,12 @@ def _tables(tables: Sequence[str | Path]) -> list[_Table]:
         try:
             stat = path.stat()
             found.append(_users(path.resolve(), stat.st_mtime_ns, stat.st_size))
-        except OSError as error:
-            name = "".join(c if c.isprintable() else "?" for c in path.name[:80])
-            problems.append(f"table {name}: cannot be read ({error.strerror}); expected a CSV or TOML file")
         except InputError as error:
             problems.append(str(error))
+        except (OSError, ValueError) as error:  # ValueError: a null character in the name
+            name = "".join(c if c.isprintable() else "?" for c in path.name[:80])
+            reason = getattr(error, "strerror", None) or "not a name of a file"
+            problems.append(f"table {name}: cannot be read ({reason}); expected a CSV or TOML file")
     if problems:
         raise InputError("\n".join(problems))
     return found
