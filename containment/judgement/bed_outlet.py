@@ -58,7 +58,7 @@ def _too_coarse(case: BedCase) -> Mechanism:
     size, material = case.setting.size or 0.0, case.material
     answer = Answer.NOT_HELD
     if not passes_outlet(outlet=size, smallest_grain=material.d10):
-        sure = material.one_size and size <= material.d10
+        sure = material.one_size and size * case.margin <= material.d10
         answer = Answer.HELD if sure else Answer.MARGINAL
     return Mechanism(
         name="grains too coarse for the outlet", answer=answer, value=size, bound=material.d10, unit="m",

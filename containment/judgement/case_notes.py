@@ -51,7 +51,7 @@ def case_cautions(case: Case, frequency: float | None, acceleration: float | Non
                 "frequencies and levels upside-down leaves the window.",
             )
         )
-        found.append(gas_caution(case, frequency))
+        found.append(gas_caution(case, frequency, acceleration))
     found += product_cautions(liquid.hazards, temperature=liquid.temperature, flash_point=liquid.flash_point)
     if frequency is not None and acceleration is not None:
         found += machine_cautions(frequency=frequency, acceleration=acceleration)

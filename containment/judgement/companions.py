@@ -150,8 +150,23 @@ def _droplets(case: Case, point: OperatingPoint) -> list[Limit]:
     ]  # fmt: skip
 
 
-def gas_caution(case: Case, frequency: float) -> Caution:
-    """Return the caution on gas in the product: it gathers at the base and lets the layer bounce."""
+def gas_caution(case: Case, frequency: float, acceleration: float) -> Caution:
+    """Return the caution on gas in the product: where its bubbles go, and what they do there."""
+    around = case.surroundings
+    if around.cushion is not None:
+        from containment.physics.bubbles import bubble_sinking_distance
+
+        moved = acceleration * float(case.gain(frequency)[1])
+        distance = float(
+            bubble_sinking_distance(moved, density=case.liquid.density, ambient_pressure=around.ambient_pressure)
+        )
+        sinks = distance < case.vessel.depth
+        where = f"those deeper than {1e3 * distance:.3g} mm under the upper surface sink" if sinks else "they rise"
+        return Caution(
+            topic="gas in the product",
+            text=f"Small bubbles are pushed by the vibration: {where} (Bleich 1956, from memory). They soften the product and "
+            "the trapped gas below it: de-aerate.",
+        )
     from containment.physics.bubbles import largest_gas_gap
 
     gap = float(
