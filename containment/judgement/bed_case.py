@@ -156,7 +156,7 @@ class BedCase:
         """Return what a strength says that exceeds its load by a ratio; a typical strength is at best marginal."""
         if ratio < 1.0:
             return Answer.NOT_HELD
-        return Answer.HELD if ratio >= self.strength_margin else Answer.MARGINAL
+        return Answer.HELD if ratio >= self.strength_margin and self.material.strength_measured else Answer.MARGINAL
 
     def shortfall(self, name: str, ratio: float) -> str:
         """Return why a strength that bears its load is no better than marginal."""
