@@ -43,6 +43,8 @@ def quantity_text(value: float | None, unit: str, digits: int = 3) -> str:
     if value is None or value != value:
         return "-"
     factor, shown = _TRADE_UNITS.get(unit, (1.0, unit))
+    if unit == "Pa" and abs(value) < 100.0:
+        factor, shown = 1.0, "Pa"
     scaled = value * factor
     if abs(scaled) == float("inf"):
         return "none"

@@ -31,28 +31,28 @@ def headline(verdict: Verdict) -> tuple[str, str, str]:
         at = _drive_point(verdict.point.frequency, verdict.point.acceleration)
         if verdict.answer is Answer.HELD and not verdict.point.strictly_inside:
             word = f"HELD FOR {seconds_text(time or 0.0).upper()}, NOT FOR EVER"
-            return word, f"{name} stays in upside-down for that time at {at}, and falls later", verdict.reason
+            return word, f"{name} stays in the upside-down vessel for that time at {at}, and falls later", verdict.reason
         if verdict.answer is Answer.HELD:
-            return "HELD", f"{name} stays in upside-down{span} at {at}", verdict.reason
+            return "HELD", f"{name} stays in the upside-down vessel{span} at {at}", verdict.reason
         if verdict.answer is Answer.MARGINAL:
             word = "MARGINAL" if verdict.proven else "NOT PROVEN"
-            return word, f"do not rely on it that {name} stays in{span} at {at}", verdict.reason
-        return "NOT HELD", f"{name} does not stay in{span} at {at}", verdict.reason
+            return word, f"do not rely on {name} staying in the upside-down vessel{span} at {at}", verdict.reason
+        return "NOT HELD", f"{name} does not stay in the upside-down vessel{span} at {at}", verdict.reason
     if verdict.holds_unshaken:
         word = "STAYS UNSHAKEN" if verdict.answer is Answer.HELD else "MARGINAL UNSHAKEN"
         if verdict.unshaken.growth_rate > 0.0:
             word = f"STAYS UNSHAKEN FOR {seconds_text(time or 0.0).upper()}, NOT FOR EVER"
-        return word, f"{name} hangs in the vessel{span} without a drive", verdict.reason
+        return word, f"{name} hangs in the upside-down vessel{span} without a drive", verdict.reason
     if verdict.answer is Answer.NOT_HELD:
-        return "CANNOT BE HELD", f"no drive within the stated limits keeps {name} in upside-down{span}", verdict.reason
+        return "CANNOT BE HELD", f"no drive within the limits keeps {name} in the upside-down vessel{span}", verdict.reason
     if verdict.answer is Answer.MARGINAL:
         word = "BARELY" if verdict.proven else "NOT PROVEN"
-        return word, f"do not rely on a drive that keeps {name} in upside-down{span}", verdict.reason
+        return word, f"do not rely on any drive to keep {name} in the upside-down vessel{span}", verdict.reason
     assert verdict.window is not None and verdict.window.minimum_acceleration is not None
     least = verdict.window.minimum_acceleration
     word = "CAN BE HELD" if time is None else f"CAN BE HELD FOR {seconds_text(time).upper()}"
     start = _drive_point(least.frequency, least.acceleration)
-    return word, f"shaking keeps {name} in upside-down, from {start}", verdict.reason
+    return word, f"shaking keeps {name} in the upside-down vessel, from {start}", verdict.reason
 
 
 def liquid_screen(verdict: Verdict, *, plain: bool = False, detail: bool = False) -> Screen:
