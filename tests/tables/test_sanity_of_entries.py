@@ -10,7 +10,7 @@ from containment.given.liquid import liquid
 from containment.given.tables import drive_entry, drive_names, grain_entry, grain_names, liquid_entry, liquid_names
 
 MELTS = {"gallium", "tin melt", "soda-lime glass melt", "cyclohexanol"}  # solid at room temperature
-NOT_GIVEN_AT_ROOM_TEMPERATURE = {"glucose syrup 42 DE"}  # its source starts above
+NOT_GIVEN_AT_ROOM_TEMPERATURE = {"glucose syrup 42 DE", "corn syrup 77"}  # their sources start above
 PRESSURE_OF_WATER = 2339.0  # Pa at 20 degC, handbook value
 
 
