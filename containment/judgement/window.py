@@ -18,9 +18,9 @@ SEARCH_RANGE: Final = (2.0, 2000.0)
 """Frequencies that are searched where the drive states no range, Hz."""
 
 _NODES: Final = 49
-_LEVELS: Final = 7
-_PER_LEVEL: Final = 10
-_EDGE_PRECISION: Final = 2e-6
+_LEVELS: Final = 5
+_PER_LEVEL: Final = 16
+_EDGE_PRECISION: Final = 1e-5
 _MARGIN_PRECISION: Final = 1e-3
 _ZOOM: Final = 9
 _ZOOMS: Final = 8
@@ -175,7 +175,7 @@ def search_window(
     Returns
     -------
     HoldingWindow
-        Corners are refined by zooming between nodes: edges to 2e-6 in frequency, the point of largest margin to 1e-3.
+        Corners are refined by zooming between nodes: edges to 1e-5 in frequency, the point of largest margin to 1e-3.
         Where the openness of the window has a peak between nodes the peak is looked into, so that a narrow window is
         not overlooked.
     """
