@@ -65,9 +65,10 @@ def grains_screen(verdict: BedVerdict, *, plain: bool = False, detail: bool = Fa
 
 def _case(screen: Screen, verdict: BedVerdict) -> None:
     material, case = verdict.material, verdict.case
-    sizes = f"{1e6 * material.d50:.4g} um"
+    factor, unit = (1e3, "mm") if material.d50 >= 1e-3 else (1e6, "um")
+    sizes = f"{factor * material.d50:.4g} {unit}"
     if not material.one_size:
-        sizes += f" (a tenth below {1e6 * material.d10:.3g}, a tenth above {1e6 * material.d90:.3g} um)"
+        sizes += f" (a tenth below {factor * material.d10:.3g}, a tenth above {factor * material.d90:.3g} {unit})"
     strength = "none: free-flowing"
     if not material.free_flowing:
         strength = f"{material.yield_strength:.4g} Pa unconfined" + (

@@ -21,6 +21,7 @@ from containment.judgement.bed_outlet import judge_outlet
 from containment.judgement.bed_upright import QUIET_GAMMA, judge_upright
 from containment.judgement.findings import Answer, Caution, Limit
 from containment.judgement.limits import drive_limits
+from containment.physics.bed.liquid_bridge import BRIDGE_SATURATION, saturation
 
 __all__ = ["BedVerdict", "assess_bed"]
 
@@ -167,9 +168,7 @@ def assess_bed(
     Raises
     ------
     InputError
-        An input that cannot be used.
-    NotComputableError
-        A moisture beyond what separate liquid bridges hold.
+        An input that cannot be used, or a moisture beyond what separate liquid bridges hold.
 
     Examples
     --------
@@ -208,6 +207,8 @@ def assess_bed(
     if drive.max_force is not None and case.product_mass is None:
         raise InputError(f"max force: a {vessel.kind} has no end, so the bed has no mass; leave the force out")
     damp = None if moisture is None else si_value(moisture, "ratio", "moisture", least=0.0, most=10.0)
+    if damp is not None:
+        _check_moisture(damp, material)
     judge = _JUDGES[setting.kind]
     judged = judge(case)
     acceleration = None if motion is None else motion.acceleration
@@ -245,6 +246,17 @@ def _check_fit(kind: str, size: float | None, vessel: Vessel) -> None:
         word = "outlet" if kind == "outlet" else "slot outlet"
         raise InputError(
             f"{word}: {size:g} m is wider than the vessel, {vessel.narrowest:g} m; for a tube without bottom give open bottom"
+        )
+
+
+def _check_moisture(moisture: float, material: Grains) -> None:
+    """Refuse more liquid than separate bridges hold: what is asked for with it is their strength."""
+    grain = {"particle_density": material.particle_density, "voidage": material.voidage}
+    most = BRIDGE_SATURATION / float(saturation(moisture=1.0, **grain))
+    if moisture > most:
+        raise InputError(
+            f"moisture: {moisture:g} is more than separate liquid bridges hold; it must be at most {most:.3g} for this bed, or "
+            "be left out"
         )
 
 

@@ -75,10 +75,11 @@ def seconds_text(seconds: float) -> str:
 
     Examples
     --------
-    >>> seconds_text(0.973), seconds_text(600.0)
-    ('0.97 s', '10 min')
+    >>> seconds_text(0.973), seconds_text(110.0), seconds_text(600.0)
+    ('0.97 s', '110 s', '10 min')
     """
     for limit, size, unit in ((120.0, 1.0, "s"), (7200.0, 60.0, "min"), (172800.0, 3600.0, "h")):
         if seconds < limit:
-            return f"{seconds / size:.2g} {unit}"
+            value = seconds / size
+            return f"{value:.0f} {unit}" if value >= 99.5 else f"{value:.2g} {unit}"
     return f"{seconds / 86400.0:.3g} days"

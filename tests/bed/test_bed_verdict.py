@@ -49,6 +49,7 @@ def rank(verdict):
         (SAND, None, dict(slot_outlet=5e-3), "not held", "discharge rate"),
         (SAND, None, dict(outlet=1.5e-4), "marginal", "grains too coarse for the outlet"),
         (ct.Grains(bulk_density=800.0, d50=5e-3), at(5.0), dict(outlet=2e-3), "held", "grains too coarse for the outlet"),
+        (ct.Grains(bulk_density=800.0, d50=5e-3), None, dict(outlet=4e-3), "marginal", "grains too coarse for the outlet"),
         (SAND, at(30.0), dict(open_bottom=True), "not held", "lower face of the bed"),
         (SAND, at(30.0), dict(pocket=0.02), "not held", "lower face of the bed"),
         (powder(), at(0.5), dict(outlet=0.02), "held", "cohesive arch"),
@@ -171,6 +172,19 @@ def test_a_heap_in_a_vessel_without_end_is_not_bounded(vessel):
     verdict = ct.assess_bed(SAND, vessel, at(2.0), freeboard=10.0)
     assert verdict.answer is Answer.MARGINAL and "heap" in verdict.binding
     assert ct.assess_bed(SAND, vessel, at(0.7), freeboard=0.0).held
+
+
+def test_the_lower_face_weighs_more_when_shaken():
+    # Bond number between 2 and 8 times a grain's weight: held at rest, marginal at Gamma 1.5, raining at Gamma 8
+    material = powder(5000.0, d90=4e-4)
+    tube = ct.Cylinder(diameter=0.01, depth=0.05)
+    rest = ct.assess_bed(material, tube, open_bottom=True)
+    bond = rest.mechanisms[1].bound
+    assert rest.held and 5.0 < bond < 9.0
+    levels = (0.55 * bond - 1.0, 0.95 * bond - 1.0, 1.05 * bond - 1.0)
+    shaken = [ct.assess_bed(material, tube, at(gamma), open_bottom=True) for gamma in levels]
+    assert [v.answer.value for v in shaken] == ["marginal", "marginal", "not held"]
+    assert shaken[-1].binding == "lower face of the bed"
 
 
 def test_drive_limits_count():

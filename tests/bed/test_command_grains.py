@@ -67,7 +67,7 @@ def test_ascii_stream():
         ((*SAND, *CUP, "--freeboard", "1mm", *SHAKEN, "--crank-ratio", "0.2"), ("--crank-ratio",)),
         ((*SAND, *CUP, "--freeboard", "1mm", "--cohesion", "5mm"), ("--cohesion", "pressure")),
         ((*SAND, *CUP, "--freeboard", "1mm", "--cohesion", "5Pa", "--yield-strength", "5Pa"), ("one of the two",)),
-        ((*SAND, *CUP, "--freeboard", "1mm", "--moisture", "0.4"), ("moisture", "separate bridges")),
+        ((*SAND, *CUP, "--freeboard", "1mm", "--moisture", "0.4"), ("moisture", "separate liquid bridges")),
         (("no such powder", *CUP, "--freeboard", "1mm"), ("no such powder",)),
         ((*SAND, "--depth", "5mm", "--freeboard", "1mm"), ("--cylinder",)),
         ((*SAND, *CUP, "--freeboard", "1mm", "--frequency", "5Hz"), ("--frequency", "--acceleration")),

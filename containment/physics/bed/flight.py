@@ -42,7 +42,6 @@ change of p is multiplied by 1 - Gamma sin(p) from one landing to the next, whic
 
 _STEP: Final = 0.05
 _LARGEST_GAMMA: Final = 1e4
-_NO_DRAG: Final = 1e-7
 
 
 def take_off_gamma(*, bulk_density: Values, depth: Values, tensile_strength: Values = 0.0, gravity: float) -> Real:
@@ -125,14 +124,20 @@ class Flight:
 def _gap(gamma: float, phase: float, drag: float, t: Real) -> tuple[Real, Real]:
     """Return the gap and its rate of change at times t after the launch."""
     s0, c0, st, ct = math.sin(phase), math.cos(phase), np.sin(phase + t), np.cos(phase + t)
-    if drag < _NO_DRAG:  # the closed form with drag cancels here; without drag it is off by less than the drag itself
+    if drag == 0.0:
         return gamma * (s0 + c0 * t - st) - 0.5 * t * t, gamma * (c0 - ct) - t
-    # particular solution of s' by undetermined coefficients, plus a decaying part that makes s'(0) = 0
+    # particular solution by undetermined coefficients, plus a decaying part that makes s(0) = s'(0) = 0, grouped so that
+    # nothing of size 1/drag is left to cancel
+    x = drag * t
+    eased = -np.expm1(-x) / drag
+    small = x < 0.02
+    safe = np.where(small, 1.0, x)
+    series = 1.0 + x * (-1.0 / 3.0 + x * (1.0 / 12.0 + x * (-1.0 / 60.0 + x * (1.0 / 360.0 - x / 2520.0))))
+    fall = 0.5 * t * t * np.where(small, series, 2.0 * (np.expm1(-safe) + safe) / safe**2)
     f = gamma / (1.0 + drag * drag)
-    start = 1.0 / drag - f * (drag * s0 - c0)
-    fade = np.exp(-drag * t)
-    rate = f * (drag * st - ct) - 1.0 / drag + start * fade
-    gap = f * (-drag * (ct - c0) - (st - s0)) - t / drag - start * np.expm1(-drag * t) / drag
+    start = c0 - drag * s0
+    rate = f * (drag * st - ct + start * np.exp(-x)) - eased
+    gap = f * (s0 - st - drag * (ct - c0) + start * eased) - fall
     return gap, rate
 
 
@@ -141,7 +146,7 @@ def _bisect(gamma: float, phase: float, drag: float, low: float, high: float, wh
     s0, c0 = math.sin(phase), math.cos(phase)
 
     def positive(t: float) -> bool:
-        if drag >= _NO_DRAG:
+        if drag > 0.0:
             return bool(_gap(gamma, phase, drag, np.array([t]))[which][0] > 0.0)
         if which == 0:
             return gamma * (s0 + c0 * t - math.sin(phase + t)) - 0.5 * t * t > 0.0
@@ -214,12 +219,13 @@ def flight(gamma: float, launch_phase: float | None = None, *, drag: float = 0.0
             break
     duration = _bisect(gamma, phase, drag, low, high, 0)
     peak = int(np.argmax(gap[: max(1, int(duration / _STEP))]))
-    around: Real = np.linspace(float(t[max(0, peak - 1)]), float(t[min(peak + 1, len(t) - 1)]), 41, dtype=np.float64)
+    top = min(float(t[min(peak + 1, len(t) - 1)]), duration)
+    crest = _bisect(gamma, phase, drag, float(t[peak - 1]) if peak else 0.2 * _STEP, top, 1)
     return Flight(
         launch_phase=phase,
         duration=duration,
         landing_velocity=-float(_gap(gamma, phase, drag, np.array([duration]))[1][0]),
-        gap=max(0.0, float(np.max(_gap(gamma, phase, drag, around)[0]))),
+        gap=max(0.0, float(_gap(gamma, phase, drag, np.array([crest]))[0][0])),
     )
 
 
