@@ -162,6 +162,22 @@ def _bisect(gamma: float, phase: float, drag: float, low: float, high: float, wh
     return 0.5 * (low + high)
 
 
+def _net(gamma: float, phase: float, drag: float, end: float) -> Real:
+    """Return the times at which a flight is sampled: a net of 0.05 rad, without what a bound excludes.
+
+    Without drag the gap lies within Gamma of the parabola Gamma (sin p + t cos p) - t^2/2. Where that exceeds Gamma there is
+    no landing, and the largest gap is within 2 sqrt(Gamma) of its crest.
+    """
+    crest = gamma * math.cos(phase)
+    reach = crest * crest - 2.0 * gamma * (1.0 - math.sin(phase))
+    spans = [(0.0, end)]
+    if drag == 0.0 and crest > 0.0 and reach > 0.0:
+        half, around = math.sqrt(reach), 2.0 * math.sqrt(gamma)
+        if half > around + 20.0:
+            spans = [(0.0, crest - half + 1.0), (crest - around - 1.0, crest + around + 1.0), (crest + half - 1.0, end)]
+    return np.concatenate([np.arange(1, int((b - a) / _STEP) + 2, dtype=np.float64) * _STEP + a for a, b in spans])
+
+
 def flight(gamma: float, launch_phase: float | None = None, *, drag: float = 0.0) -> Flight | None:
     """Return the flight that starts at a phase of the base, or None where the base does not throw the bed there.
 
@@ -205,7 +221,7 @@ def flight(gamma: float, launch_phase: float | None = None, *, drag: float = 0.0
         return None
     # s <= 2 Gamma + Gamma t - t^2/2 without drag, and drag only shortens the flight
     end = gamma + math.sqrt(gamma * gamma + 4.0 * gamma) + _STEP
-    t: Real = np.arange(1, int(end / _STEP) + 2, dtype=np.float64) * _STEP
+    t = _net(gamma, phase, drag, end)
     gap, rate = _gap(gamma, phase, drag, t)
     below = np.flatnonzero(gap <= 0.0)
     last = int(below[0])  # the bound above makes the gap negative within the net
@@ -218,7 +234,7 @@ def flight(gamma: float, launch_phase: float | None = None, *, drag: float = 0.0
             low, high = float(t[i]), dip
             break
     duration = _bisect(gamma, phase, drag, low, high, 0)
-    peak = int(np.argmax(gap[: max(1, int(duration / _STEP))]))
+    peak = int(np.argmax(np.where(t < duration, gap, 0.0)))
     top = min(float(t[min(peak + 1, len(t) - 1)]), duration)
     crest = _bisect(gamma, phase, drag, float(t[peak - 1]) if peak else 0.2 * _STEP, top, 1)
     return Flight(
