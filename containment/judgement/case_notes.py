@@ -87,7 +87,8 @@ def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
             "base, good for wavelengths below about three depths; near resonance take the edges as estimates"
         )
     if case.vessel.kind == "unbounded":
-        lines.append("no side walls: every wavelength counts")
+        longest = 2.0 * math.pi / (1e-3 * min(case.capillary_wavenumber, 1.0 / case.vessel.depth))
+        lines.append(f"no side walls: every wavelength up to {longest:.3g} m counts; longer waves hardly move in the dwell")
     if case.liquid.vapour_pressure is None:
         lines.append("vapour pressure unknown, taken as 0")
     return tuple(lines)

@@ -17,6 +17,7 @@ Real = npt.NDArray[np.float64]
 Chosen = npt.NDArray[np.intp]
 
 _GOLDEN: Final = 0.3819660112501051
+_FIRST_STEP: Final = 0.0025
 
 
 class Cases(Protocol):
@@ -32,7 +33,14 @@ class Cases(Protocol):
 
 
 def first_crossing(
-    cases: Cases, start: Real, stop: Real, *, turns: Real, step: float = 0.16, precision: float = 1e-12
+    cases: Cases,
+    start: Real,
+    stop: Real,
+    *,
+    turns: Real,
+    step: float = 0.16,
+    precision: float = 1e-12,
+    from_root: bool = False,
 ) -> Real:
     """Return the first root of each case in (start, stop], or infinity where there is none.
 
@@ -48,6 +56,8 @@ def first_crossing(
         Step in log a where one harmonic or fewer is at work.
     precision : float
         Relative width of the final brackets.
+    from_root : bool
+        Whether `start` lies just above a root: the first steps are then small, so that a pair close to it is seen.
 
     Returns
     -------
@@ -64,10 +74,11 @@ def first_crossing(
     a0 = a1 * np.exp(-step)
     v0, v1 = active.margin(a0), active.margin(a1)
     found: list[Chosen] = []
+    ramp = _FIRST_STEP if from_root else step
     while len(index):
-        a2 = a1 * np.exp(step / np.maximum(1.0, np.sqrt(a1) * turns[index]))
-        last = a2 >= stop[index]
-        a2 = np.where(last, stop[index], a2)
+        a2 = a1 * np.exp(min(ramp, step) / np.maximum(1.0, np.sqrt(a1) * turns[index]))
+        ramp *= 2.0
+        last = a1 >= stop[index]  # one step beyond the end, so that a pair in the last step is seen as well
         v2 = active.margin(a2)
         crossed = (v1 > 0.0) != (v2 > 0.0)
         if crossed.any():
@@ -99,7 +110,7 @@ def first_crossing(
         result[where] = refined(
             chosen_cases.margin, np.concatenate(low), np.concatenate(high), precision=precision, take=chosen_cases.take
         )
-    return result
+    return np.where(result <= stop, result, np.inf)
 
 
 def _bottom(cases: Cases, a0: Real, a1: Real, a2: Real, v1: Real, outer: Real) -> Real:

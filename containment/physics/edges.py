@@ -36,6 +36,8 @@ _NODES_PER_E_FOLD: Final = 40
 
 _CHUNK: Final = 6000
 
+_LOWER_STRIDE: Final = 4.0
+
 _COARSE: Final = 24
 """Wavenumbers that are looked at on each of the two passes for a mode that breaks up early."""
 
@@ -75,6 +77,7 @@ def first_roots(
     subharmonic: bool,
     start: Real | None = None,
     extra_rows: int = 0,
+    stride: float = 1.0,
 ) -> Real:
     """Return the first root in acceleration of each case (k, w) up to `stop`, or infinity.
 
@@ -92,6 +95,9 @@ def first_roots(
         Where to start; by default where the continued fraction is proven to be free of roots.
     extra_rows : int
         Rows added to the usual truncation, to show that it has converged.
+    stride : float
+        Factor on the step of the march where many harmonics are at work. On the lower side a pocket of hold that is
+        stepped over only makes the verdict more cautious.
     """
     result = np.full(len(k), np.inf)
     rows = 2.0 * np.sqrt(stop * k) / w
@@ -108,7 +114,8 @@ def first_roots(
                 half.take(near) if len(near) < len(part) else half,
                 begin[near],
                 stop[chosen],
-                turns=np.sqrt(k[chosen]) / w[chosen],
+                turns=np.sqrt(k[chosen]) / w[chosen] / stride,
+                from_root=start is not None,
             )
     return result
 
@@ -157,10 +164,12 @@ def hold_edges(
     fall_k = np.flatnonzero(falls)
     lw, lk = np.repeat(np.arange(len(w)), len(fall_k)), np.tile(fall_k, len(w))
     # most are found below the ceiling, where fewer harmonics are at work; the rest are sought up to the amplitude bound
-    low = first_roots(layer, k[lk], w[lw], growth, ceiling[lw], subharmonic=False)
+    low = first_roots(layer, k[lk], w[lw], growth, ceiling[lw], subharmonic=False, stride=_LOWER_STRIDE)
     rest = np.flatnonzero(np.isinf(low) & (ceiling[lw] < cap[lw]))
     if len(rest):
-        low[rest] = first_roots(layer, k[lk[rest]], w[lw[rest]], growth, cap[lw[rest]], subharmonic=False)
+        low[rest] = first_roots(
+            layer, k[lk[rest]], w[lw[rest]], growth, cap[lw[rest]], subharmonic=False, stride=_LOWER_STRIDE
+        )
     lower, lower_k = extreme(low, lw, lk, len(w), np.maximum)
     lower_wave = np.where(lower_k >= 0, k[lower_k], np.nan)
     if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
@@ -313,7 +322,7 @@ def _refined_in_wavenumber(
         value = edges.upper.copy()
         zoom(
             wave, value,
-            lambda k, ww, stop, s=subharmonic: first_roots(layer, k, ww, growth, stop, subharmonic=s),  # type: ignore[misc]
+            lambda k, ww, stop, s=subharmonic: _upper_roots(layer, k, ww, growth, stop, subharmonic=s),  # type: ignore[misc]
             1.0,
         )
         edges.upper[mine] = value[mine]
@@ -324,6 +333,21 @@ def _refined_in_wavenumber(
         -1.0,
     )
     return edges
+
+
+def _upper_roots(
+    layer: BoundedLayer, k: Real, w: Real, growth: float, stop: Real, *, subharmonic: bool
+) -> Real:
+    """Return the first root that breaks a mode up; for a mode that falls at rest, the harmonic root after the one that holds."""
+    root = first_roots(layer, k, w, growth, stop, subharmonic=subharmonic)
+    if subharmonic:
+        return root
+    falls = np.flatnonzero((layer.coefficient(growth, k).real < 0.0) & np.isfinite(root))
+    if len(falls):
+        root[falls] = first_roots(
+            layer, k[falls], w[falls], growth, stop[falls], subharmonic=False, start=root[falls] * (1.0 + 1e-7)
+        )
+    return root
 
 
 def edge_errors(layer: BoundedLayer, edges: Edges, *, growth: float) -> tuple[Real, Real]:

@@ -91,8 +91,9 @@ def determinant(
     value_slope = (
         up.first_slope * down.first + up.first * down.first_slope - centre * (cross_slope - relative[rows] * cross)
     )
-    phase = np.prod(a_n / np.abs(a_n), axis=0) * (value / np.abs(value))
-    return phase, relative.sum(axis=0) + value_slope / value
+    with np.errstate(divide="ignore", invalid="ignore"):  # exactly at an exponent: phase 0, infinite slope
+        phase = np.prod(a_n / np.abs(a_n), axis=0) * np.where(value == 0.0, 0.0, value / np.abs(value))
+        return phase, relative.sum(axis=0) + np.where(value == 0.0, np.inf, value_slope / value)
 
 
 @dataclass(frozen=True, slots=True)
@@ -114,6 +115,9 @@ def _tail(inverse: Complex, relative: Complex, b: float) -> _Tail:
         value = this - link * last
         slope = this_slope - link * (last_slope - (relative[n] + relative[n + 1]) * last)
         last, this, last_slope, this_slope = this, value, this_slope, slope
+        if n % 16 == 0:  # positive factors change neither phase nor logarithmic derivative, and keep the numbers in range
+            size = 1.0 / np.maximum(np.abs(this), np.abs(last))
+            last, this, last_slope, this_slope = last * size, this * size, last_slope * size, this_slope * size
     second = inverse[0] * last
     return _Tail(this, this_slope, second, inverse[0] * last_slope - relative[0] * second)
 

@@ -99,11 +99,15 @@ class Half:
         last = np.ones(self.first.shape, np.complex128)
         this = last.copy()
         spare = np.empty_like(last)
-        for link in self.links[::-1]:
+        for row, link in enumerate(self.links[::-1]):
             np.multiply(link, b, out=spare)
             spare *= last
             np.subtract(this, spare, out=spare)
             last, this, spare = this, spare, last
+            if row % 32 == 31:  # keep the numbers in range; a positive factor changes no sign
+                size = 1.0 / np.maximum(np.abs(this), np.abs(last))
+                this *= size
+                last *= size
         fraction = b * self.second * last  # a^2 C D_1
         if self.subharmonic:
             left = self.first * this - fraction

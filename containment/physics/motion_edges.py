@@ -51,7 +51,9 @@ def motion_first_roots(
         if len(near):
             chosen = part[near]
             turns = np.sqrt(k[chosen] * float(np.sum(np.abs(coupling)))) / w[chosen]
-            result[chosen] = first_crossing(half.take(near), begin[near], stop[chosen], turns=turns)
+            result[chosen] = first_crossing(
+                half.take(near), begin[near], stop[chosen], turns=turns, from_root=start is not None
+            )
     return result
 
 
