@@ -141,10 +141,8 @@ def _point(screen: Screen, verdict: Verdict, point: OperatingPoint) -> None:
     how = "half the drive frequency" if point.worst_subharmonic else "the drive frequency or slower"
     facts = [("worst mode", f"{verdict.worst_mode or '-'}"), ("it", f"{motion}, answering at {how}")]
     count = point.growing_modes
-    proof = (
-        f"{count or 'no'} growing mode{'' if count == 1 else 's'}: winding number of {point.modes_checked} modes, all others "
-        "excluded by a bound"
-    )
+    proof = f"{count or 'no'} growing mode{'' if count == 1 else 's'}: winding number of {point.modes_checked} modes, "
+    proof += "all others excluded by a bound" if point.complete else "a choice; far outside the edges no more are counted"
     facts.append(("proof", proof if point.proven else f"NOT PROVEN: {proof}; a winding number is not an integer"))
     if verdict.spans_edge:
         facts.append(("properties", "their stated uncertainty reaches across an edge"))

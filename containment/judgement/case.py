@@ -1,6 +1,7 @@
 """One case to be judged: liquid, vessel and growth allowance, turned into the arrays that the physics takes."""
 
 import dataclasses
+import functools
 import math
 from dataclasses import dataclass
 from functools import cached_property
@@ -83,6 +84,7 @@ def allowance(*, depth: float, dwell: Any = None, unevenness: Any = None, amplif
     return Allowance(dwell=seconds, unevenness=uneven, amplification=factor)
 
 
+@functools.lru_cache(maxsize=16)
 def spectrum_of(vessel: Vessel) -> wavenumbers.Spectrum:
     """Return the wavenumbers of a vessel."""
     match vessel:
@@ -171,10 +173,6 @@ class Case:
         self, frequency: npt.ArrayLike, *, growth: float | None = None, layer: LayerModel | None = None
     ) -> Edges:
         """Return the edges of the window at given frequencies (Hz), for the allowance or another growth rate or layer."""
-        if self.liquid.surface_tension == 0.0:
-            raise InputError(
-                "surface tension: 0 N/m is not allowed here; without it every short wave falls and no finite drive holds"
-            )
         edges = self._layer_edges(layer or self.layer, frequency, growth)
         if self.surroundings.cushion is None:
             return edges

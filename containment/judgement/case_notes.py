@@ -4,6 +4,7 @@ import math
 
 import numpy as np
 
+from containment.constants import STANDARD_GRAVITY
 from containment.given.drive import DriveLimits
 from containment.given.waveforms import PURE_SINE
 from containment.judgement.case import Case
@@ -51,7 +52,8 @@ def case_cautions(case: Case, frequency: float | None, acceleration: float | Non
                 "frequencies and levels upside-down leaves the window.",
             )
         )
-        found.append(gas_caution(case, frequency, acceleration))
+        if case.surroundings.ambient_pressure > 1.01 * liquid.density * STANDARD_GRAVITY * case.vessel.depth:
+            found.append(gas_caution(case, frequency, acceleration))
     found += product_cautions(liquid.hazards, temperature=liquid.temperature, flash_point=liquid.flash_point)
     if frequency is not None and acceleration is not None:
         found += machine_cautions(frequency=frequency, acceleration=acceleration)
@@ -89,6 +91,8 @@ def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
     if case.vessel.kind == "unbounded":
         longest = 2.0 * math.pi / (1e-3 * min(case.capillary_wavenumber, 1.0 / case.vessel.depth))
         lines.append(f"no side walls: every wavelength up to {longest:.3g} m counts; longer waves hardly move in the dwell")
+    if case.vessel.kind == "slot":
+        lines.append("slot: waves across its width only; along its length longer waves may fall")
     if case.liquid.vapour_pressure is None:
         lines.append("vapour pressure unknown, taken as 0")
     return tuple(lines)

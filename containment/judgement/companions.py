@@ -116,6 +116,8 @@ def _tilt(case: Case, point: OperatingPoint) -> list[Limit]:
         return []
     a = point.acceleration * float(case.gain(point.frequency)[0])
     lower = case.lower_roots(point.frequency, ones)
+    if np.any((case.layer.stiffness(ones) < 0.0) & (lower == 0.0)):
+        return []  # a mode falls, slowly enough for the dwell: it has no mean position to tilt about
     stiffness = tilt.mean_stiffness(
         ones, a, lower, density=case.liquid.density, surface_tension=case.liquid.surface_tension
     )

@@ -135,6 +135,7 @@ class Verdict:
                 "worst_answers_at_half_frequency": point.worst_subharmonic,
                 "unstable_modes": point.growing_modes,
                 "modes_checked": point.modes_checked,
+                "all_modes_counted": point.complete,
                 "proven": point.proven,
             }
         return result

@@ -12,7 +12,7 @@ from containment.given.liquid import Liquid
 from containment.given.motion import Motion
 from containment.given.quantities import si_value
 from containment.given.surroundings import Surroundings
-from containment.given.vessel import Box, Cylinder, Vessel
+from containment.given.vessel import Box, Cylinder, Slot, Vessel
 from containment.given.waveforms import PURE_SINE, Waveform
 from containment.judgement.case import Allowance, Case, allowance
 from containment.judgement.case_notes import assumptions, averaged_estimate, case_cautions
@@ -178,6 +178,11 @@ def _case(
         )
     case = Case(liquid, vessel, bear, around, shape)
     refuse_where_unknown(case)
+    tension = liquid.surface_tension if around.below is None else around.interfacial_tension
+    if tension == 0.0:
+        raise InputError(
+            "surface tension: 0 N/m is not allowed here; without it every short wave falls and no finite drive holds"
+        )
     if drive.max_force is not None and case.product_mass is None:
         raise InputError(f"max force: a {vessel.kind} has no end, so the product has no mass; leave the force out")
     return case
@@ -244,7 +249,7 @@ def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float, *
     a = motion.acceleration
     below = math.inf if point.lower == 0.0 else a / point.lower
     above = point.upper / a
-    spans = point.inside and _spans_edge(case, motion)
+    spans = point.inside and _spans_edge(case, motion.frequency, motion.acceleration)
     beside = companion_limits(case, point) if point.inside else []
     broken = [limit for limit in limits if not limit.ok]
     tight = [limit for limit in limits if limit.ok and limit.ratio is not None and limit.ratio < factor
@@ -268,8 +273,10 @@ def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float, *
         answer, reason = Answer.MARGINAL, "the stated uncertainty of the properties reaches across an edge"
     elif tight:
         answer, reason = Answer.MARGINAL, f"only a factor of {tight[0].ratio:.3g} to the limit: {tight[0].name}"
-    elif doubt := _doubt(beside, factor):
+    elif doubt := _doubt(beside, factor) or _slot_doubt(case):
         answer, reason = Answer.MARGINAL, doubt
+    elif point.lower == 0.0 and case.unshaken.growth_rate == 0.0 and _at_rest(case, factor)[0] is not Answer.HELD:
+        answer, reason = _at_rest(case, factor)
     else:
         answer, reason = Answer.HELD, "every mode dies out" if point.strictly_inside else "no mode outgrows the dwell"
     rests = case.unshaken.growth_rate <= case.allowance.growth
@@ -302,6 +309,12 @@ def _doubt(beside: list[Limit], factor: float) -> str:
     return ""
 
 
+def _slot_doubt(case: Case) -> str:
+    if isinstance(case.vessel, Slot):
+        return "only waves across the slot are counted; along its length longer waves may fall: give --box WIDTHxLENGTH"
+    return ""
+
+
 def _minimum_drive(case: Case, drive: DriveLimits, factor: float) -> Verdict:
     rests = case.unshaken.growth_rate <= case.allowance.growth
     window = strict = best = None
@@ -325,7 +338,9 @@ def _minimum_drive(case: Case, drive: DriveLimits, factor: float) -> Verdict:
         answer, reason = Answer.MARGINAL, "a window was found, but that no mode was missed in it is not proven"
     elif best.margin < factor:
         answer, reason = Answer.MARGINAL, f"the window is narrow: at best a factor of {best.margin:.3g} to its nearer edge"
-    elif doubt := _doubt(beside, factor):
+    elif _spans_edge(case, best.frequency, best.acceleration):
+        answer, reason = Answer.MARGINAL, "there is a window, but the uncertainty of the properties reaches across its edges"
+    elif doubt := _doubt(beside, factor) or _slot_doubt(case):
         answer, reason = Answer.MARGINAL, f"there is a window, but at its point of largest margin: {doubt}"
     else:
         answer, reason = Answer.HELD, "there is a window between falling and breaking up"
@@ -350,6 +365,8 @@ def _typical_frequency(window: HoldingWindow | None) -> float:
 
 def _at_rest(case: Case, factor: float) -> tuple[Answer, str]:
     """Judge a layer that needs no shaking; a liquid that wets the wall lets go earlier than the flat surface says."""
+    if slot := _slot_doubt(case):
+        return Answer.MARGINAL, slot
     if case.unshaken.growth_rate > 0.0:
         return Answer.HELD, "even unshaken it grows no faster than the dwell allows"
     if case.vessel.contact_line == "pinned":
@@ -380,7 +397,7 @@ def _limits(case: Case, drive: DriveLimits, frequency: float, acceleration: floa
     ]  # fmt: skip
 
 
-def _spans_edge(case: Case, motion: Motion) -> bool:
+def _spans_edge(case: Case, frequency: float, acceleration: float) -> bool:
     """Return whether the point leaves the window at any corner of the stated uncertainty of the properties."""
     spread = case.liquid.uncertainty
     names = [name for name in ("viscosity", "surface_tension", "density") if spread.get(name, 0.0) > 0.0]
@@ -390,7 +407,7 @@ def _spans_edge(case: Case, motion: Motion) -> bool:
         corners = [{**c, name: value * (1.0 + sign * min(spread[name], 0.9))} for c in corners for sign in (-1, 1)]
     for corner in corners if names else []:
         values = {n: corner.get(n, getattr(case.liquid, n)) for n in ("density", "viscosity", "surface_tension")}
-        edges = dataclasses.replace(case, liquid=Liquid(**values)).edges(np.array([motion.frequency]))
-        if not edges.lower[0] < motion.acceleration < edges.upper[0]:
+        edges = dataclasses.replace(case, liquid=Liquid(**values)).edges(np.array([frequency]))
+        if not edges.lower[0] < acceleration < edges.upper[0]:
             return True
     return False

@@ -35,6 +35,8 @@ _NODES_PER_E_FOLD: Final = 40
 """Density of wavenumber nodes where every wavenumber counts; extremes are refined afterwards."""
 
 _CHUNK: Final = 6000
+_SMALLEST_CHUNK: Final = 100
+_LARGEST_BLOCK: Final = 150_000
 
 _LOWER_STRIDE: Final = 4.0
 
@@ -102,9 +104,16 @@ def first_roots(
     result = np.full(len(k), np.inf)
     rows = 2.0 * np.sqrt(stop * k) / w
     order = np.argsort(rows, kind="stable")
-    for first in range(0, len(order), _CHUNK):
-        part = order[first : first + _CHUNK]
-        count = rows_needed((0.5 * float(rows[part[-1]])) ** 2, 1.0) + extra_rows
+    first = 0
+    while first < len(order):
+        size = _CHUNK
+        while True:  # fewer cases at once where many rows are needed, so that memory stays bounded
+            part = order[first : first + size]
+            count = rows_needed((0.5 * float(rows[part[-1]])) ** 2, 1.0) + extra_rows
+            if size <= _SMALLEST_CHUNK or count * len(part) <= _LARGEST_BLOCK:
+                break
+            size //= 2
+        first += len(part)
         half = Half.of(layer, k[part], w[part], growth, count, subharmonic=subharmonic)
         begin = half.root_free_below() if start is None else start[part]
         near = np.flatnonzero(begin < stop[part])
@@ -338,7 +347,7 @@ def _refined_in_wavenumber(
 def _upper_roots(
     layer: BoundedLayer, k: Real, w: Real, growth: float, stop: Real, *, subharmonic: bool
 ) -> Real:
-    """Return the first root that breaks a mode up; for a mode that falls at rest, the harmonic root after the one that holds."""
+    """Return the root that breaks a mode up; for one that falls at rest, the harmonic root after the one that holds."""
     root = first_roots(layer, k, w, growth, stop, subharmonic=subharmonic)
     if subharmonic:
         return root
