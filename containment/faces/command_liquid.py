@@ -1,11 +1,14 @@
 """``containment liquid``: verdict for a liquid layer in an upside-down vessel."""
 
 import argparse
+from typing import TYPE_CHECKING
 
 from containment.errors import InputError
 from containment.faces import options as shared
-from containment.given.liquid import Liquid
-from containment.given.surroundings import Surroundings
+
+if TYPE_CHECKING:
+    from containment.given.liquid import Liquid
+    from containment.given.surroundings import Surroundings
 
 __all__ = ["add_arguments", "add_liquid", "liquid_from", "run"]
 
@@ -52,7 +55,7 @@ def add_surroundings(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--ambient-pressure", metavar="P", help="absolute; default 101.325kPa")
 
 
-def surroundings_from(options: argparse.Namespace) -> Surroundings:
+def surroundings_from(options: argparse.Namespace) -> "Surroundings":
     """Return the surroundings that the options describe."""
     from containment.given.liquid import liquid
     from containment.given.surroundings import Surroundings
@@ -88,18 +91,19 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     shared.add_output(parser)
 
 
-def liquid_from(options: argparse.Namespace) -> Liquid:
+def liquid_from(options: argparse.Namespace) -> "Liquid":
     """Return the liquid that the options describe."""
-    from containment.given.liquid import liquid
+    from pathlib import Path
+
+    from containment.given.liquid import PROPERTY_BOUNDS, liquid
 
     values = {
-        name: shared.quantity(options, name, kind)
-        for name, kind in (
-            ("density", "density"),
-            ("viscosity", "viscosity"),
-            ("surface_tension", "surface tension"),
-        )
+        name: shared.quantity(options, name, kind, least=least, most=most)
+        for name, (kind, least, most) in PROPERTY_BOUNDS.items()
     }
+    for file in options.table or ():
+        if not Path(file).is_file():
+            raise InputError(f"--table: {file!r} is not a file that can be read")
     made = liquid(
         options.name,
         temperature=shared.quantity(options, "temperature", "temperature", above=0.0, most=5000.0),
@@ -115,7 +119,7 @@ def liquid_from(options: argparse.Namespace) -> Liquid:
     return _with_solids(made, options)
 
 
-def _with_solids(made: Liquid, options: argparse.Namespace) -> Liquid:
+def _with_solids(made: "Liquid", options: argparse.Namespace) -> "Liquid":
     """Return the liquid with the suspended solids that the options describe."""
     solids = shared.quantity(options, "solids", "ratio", least=0.0, most=1.0)
     packing = shared.quantity(options, "max_packing", "ratio", above=0.0, most=1.0)

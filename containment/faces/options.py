@@ -1,14 +1,15 @@
 """Options that the sub-commands share: vessel, drive point, drive limits, output."""
 
 import argparse
-from typing import Any
+from typing import TYPE_CHECKING, Any
 
 from containment.errors import InputError
-from containment.given.drive import DriveLimits
-from containment.given.motion import Motion, waveform
-from containment.given.quantities import parse_quantity
-from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded, Vessel
-from containment.given.waveforms import Waveform
+
+if TYPE_CHECKING:  # --help and argument errors need argparse only: what loads numpy is imported where it is used
+    from containment.given.drive import DriveLimits
+    from containment.given.motion import Motion
+    from containment.given.vessel import Vessel
+    from containment.given.waveforms import Waveform
 
 __all__ = [
     "add_drive_limits",
@@ -28,7 +29,7 @@ _SIZES = ("acceleration", "amplitude", "stroke", "velocity")
 
 def quantity(options: argparse.Namespace, name: str, kind: str, **bounds: Any) -> float | None:
     """Return the SI value of an option, or None where it is not given."""
-    from containment.given.quantities import si_value
+    from containment.given.quantities import parse_quantity, si_value
 
     text = getattr(options, name)
     if text is None:
@@ -84,8 +85,10 @@ def add_output(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--detail", action="store_true", help="sources, method and digits as well")
 
 
-def vessel_from(options: argparse.Namespace) -> Vessel:
+def vessel_from(options: argparse.Namespace) -> "Vessel":
     """Return the vessel that the options describe."""
+    from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded
+
     given = [shape for shape in _SHAPES if getattr(options, shape)]
     if len(given) != 1:
         said = "no shape is given" if not given else "given: " + ", ".join(f"--{shape}" for shape in given)
@@ -109,6 +112,8 @@ def vessel_from(options: argparse.Namespace) -> Vessel:
 
 
 def _pair(text: str, option: str) -> tuple[float, float]:
+    from containment.given.quantities import parse_quantity
+
     first, cross, second = text.replace("×", "x").partition("x")
     if not cross:
         raise InputError(f"{option}: {text!r} is not two lengths; expected two with an x between, such as 60mmx80mm")
@@ -119,8 +124,10 @@ def _pair(text: str, option: str) -> tuple[float, float]:
     return a, b
 
 
-def motion_from(options: argparse.Namespace) -> Motion | None:
+def motion_from(options: argparse.Namespace) -> "Motion | None":
     """Return the drive point, or None where none is given."""
+    from containment.given.motion import Motion
+
     sizes = [name for name in _SIZES if getattr(options, name) is not None]
     if options.frequency is None:
         if sizes:
@@ -143,8 +150,10 @@ def motion_from(options: argparse.Namespace) -> Motion | None:
     )
 
 
-def shape_from(options: argparse.Namespace) -> Waveform | None:
+def shape_from(options: argparse.Namespace) -> "Waveform | None":
     """Return the shape of the motion, or None for a pure sine."""
+    from containment.given.motion import waveform
+
     second, crank = _second_harmonic(options), quantity(options, "crank_ratio", "ratio", least=0.0, most=0.9)
     return None if second is None and crank is None else waveform(second_harmonic=second, crank_ratio=crank)
 
@@ -153,13 +162,18 @@ def _second_harmonic(options: argparse.Namespace) -> tuple[float, float] | None:
     text = options.second_harmonic
     if text is None:
         return None
+    from containment.given.quantities import parse_quantity
+
     ratio, at, phase = text.partition("@")
     option = "--second-harmonic"
     return parse_quantity(ratio, "ratio", option), parse_quantity(phase, "angle", option) if at else 0.0
 
 
-def drive_from(options: argparse.Namespace) -> DriveLimits:
+def drive_from(options: argparse.Namespace) -> "DriveLimits":
     """Return the drive's limits: those of the named class, single values replaced where given."""
+    from containment.given.drive import DriveLimits
+    from containment.given.quantities import parse_quantity
+
     values: dict[str, Any] = {}
     if options.drive is not None:
         from containment.given.tables import drive_entry

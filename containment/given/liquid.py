@@ -12,9 +12,9 @@ from containment.given.quantities import si_value
 if TYPE_CHECKING:
     from containment.given.tables import LiquidEntry
 
-__all__ = ["Liquid", "liquid", "liquid_at"]
+__all__ = ["PROPERTY_BOUNDS", "Liquid", "liquid", "liquid_at"]
 
-_BOUNDS = {
+PROPERTY_BOUNDS = {
     # property: (kind, least, most), SI; far outside what is poured
     "density": ("density", 1.0, 3e4),
     "viscosity": ("viscosity", 1e-6, 1e6),
@@ -74,7 +74,7 @@ class Liquid:
     entry: Any = field(default=None, repr=False, compare=False)
 
     def __post_init__(self) -> None:
-        for name, (kind, least, most) in _BOUNDS.items():
+        for name, (kind, least, most) in PROPERTY_BOUNDS.items():
             value = si_value(getattr(self, name), kind, name.replace("_", " "), least=least, most=most)
             object.__setattr__(self, name, value)
 
@@ -148,7 +148,7 @@ def liquid_at(entry: "LiquidEntry", temperature: float, *, overrides: Mapping[st
     sources: dict[str, str] = {}
     uncertainty: dict[str, float] = {}
     overrides = overrides or {}
-    for key in _BOUNDS:
+    for key in PROPERTY_BOUNDS:
         if overrides.get(key) is not None:
             values[key], sources[key] = overrides[key], "given by the user"
             continue

@@ -87,7 +87,7 @@ def test_earliest_launch_gives_the_largest_gap(gamma, share, drag):
     first = math.asin(1.0 / gamma)
     other = flight(gamma, first + share * (math.pi - 2.0 * first))
     assert other is None or other.gap <= largest_gap(gamma) * (1.0 + 1e-6)
-    assert largest_gap(gamma, drag=drag) <= largest_gap(gamma) * (1.0 + 1e-6)
+    assert largest_gap(gamma, drag=drag) <= largest_gap(gamma) * (1.0 + 1e-5)
 
 
 def test_gap_grows_with_gamma():
