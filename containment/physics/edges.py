@@ -80,6 +80,8 @@ def first_roots(
     start: Real | None = None,
     extra_rows: int = 0,
     stride: float = 1.0,
+    into: Real | None = None,
+    second: Real | None = None,
 ) -> Real:
     """Return the first root in acceleration of each case (k, w) up to `stop`, or infinity.
 
@@ -100,8 +102,10 @@ def first_roots(
     stride : float
         Factor on the step of the march where many harmonics are at work. On the lower side a pocket of hold that is
         stepped over only makes the verdict more cautious.
+    into, second : array, optional
+        Where the first roots go, and the next ones up to `stop`, which are sought only if `second` is given.
     """
-    result = np.full(len(k), np.inf)
+    result = np.full(len(k), np.inf) if into is None else into
     rows = 2.0 * np.sqrt(stop * k) / w
     order = np.argsort(rows, kind="stable")
     first = 0
@@ -126,6 +130,13 @@ def first_roots(
                 turns=np.sqrt(k[chosen]) / w[chosen] / stride,
                 from_root=start is not None,
             )
+            if second is not None:
+                again = near[np.isfinite(result[chosen])]
+                after = part[again]
+                second[after] = first_crossing(
+                    half.take(again), result[after] * (1.0 + 1e-7), stop[after], turns=np.sqrt(k[after]) / w[after],
+                    from_root=True,
+                )  # fmt: skip
     return result
 
 
@@ -170,20 +181,6 @@ def hold_edges(
 
     # the static sign decides which modes need holding; only they have a lower side
     falls = layer.coefficient(growth, k).real < 0.0
-    fall_k = np.flatnonzero(falls)
-    lw, lk = np.repeat(np.arange(len(w)), len(fall_k)), np.tile(fall_k, len(w))
-    # most are found below the ceiling, where fewer harmonics are at work; the rest are sought up to the amplitude bound
-    low = first_roots(layer, k[lk], w[lw], growth, ceiling[lw], subharmonic=False, stride=_LOWER_STRIDE)
-    rest = np.flatnonzero(np.isinf(low) & (ceiling[lw] < cap[lw]))
-    if len(rest):
-        low[rest] = first_roots(
-            layer, k[lk[rest]], w[lw[rest]], growth, cap[lw[rest]], subharmonic=False, stride=_LOWER_STRIDE
-        )
-    lower, lower_k = extreme(low, lw, lk, len(w), np.maximum)
-    lower_wave = np.where(lower_k >= 0, k[lower_k], np.nan)
-    if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
-        lower[:], lower_wave[:] = np.inf, 0.0  # the acceleration needed grows without bound as k falls
-
     floor = Floor.of(layer, k)
     upper, upper_wave = nodes.breaks.copy(), nodes.breaks_k.copy()
     upper_sub = np.isfinite(upper)
@@ -204,15 +201,23 @@ def hold_edges(
         not_excluded(layer, floor, ik[stable], kk[stable], ww[stable], stop[stable], growth, subharmonic=False)
     ]
     note(first_roots(layer, kk[stable], ww[stable], growth, stop[stable], subharmonic=False), iw[stable], kk[stable], False)
-    # harmonic waves of the modes that fall at rest: the next root above the one that holds them
-    ceiling_now = np.minimum(upper, cap)
-    again = np.flatnonzero(np.isfinite(low) & (low < ceiling_now[lw]))
-    if len(again):
-        begin = low[again] * (1.0 + 1e-7)
-        second = first_roots(
-            layer, k[lk[again]], w[lw[again]], growth, ceiling_now[lw[again]], subharmonic=False, start=begin
+    # modes that fall at rest: the root that holds them, and, below the ceiling, the next one, which breaks them up
+    fall_k = np.flatnonzero(falls)
+    lw, lk = np.repeat(np.arange(len(w)), len(fall_k)), np.tile(fall_k, len(w))
+    stop = np.minimum(upper, cap)[lw]
+    low = np.full(len(lk), np.inf)
+    second = np.full(len(lk), np.inf)
+    first_roots(layer, k[lk], w[lw], growth, stop, subharmonic=False, stride=_LOWER_STRIDE, into=low, second=second)
+    rest = np.flatnonzero(np.isinf(low) & (stop < cap[lw]))
+    if len(rest):  # sought up to the amplitude bound where waves break up first
+        low[rest] = first_roots(
+            layer, k[lk[rest]], w[lw[rest]], growth, cap[lw[rest]], subharmonic=False, stride=_LOWER_STRIDE
         )
-        note(second, lw[again], k[lk[again]], False)
+    note(second, lw, k[lk], False)
+    lower, lower_k = extreme(low, lw, lk, len(w), np.maximum)
+    lower_wave = np.where(lower_k >= 0, k[lower_k], np.nan)
+    if spectrum.continuous_from == 0.0 and growth == 0.0 and falls.any():
+        lower[:], lower_wave[:] = np.inf, 0.0  # the acceleration needed grows without bound as k falls
 
     edges = Edges(f, lower, upper, lower_wave, upper_wave, upper_sub)
     if np.any(upper_wave >= spectrum.continuous_from) or np.any(lower_wave >= spectrum.continuous_from):
