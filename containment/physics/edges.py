@@ -248,13 +248,16 @@ def _wavenumber_nodes(
     """Find wavenumbers that reach past every one that matters, and an acceleration at which some mode breaks up."""
     reach = 4.0 * max(capillary, 3.0 / depth if np.isfinite(depth) else 0.0)
     breaks, breaks_k = np.full(len(w), np.inf), np.full(len(w), np.nan)
+    some = np.arange(len(w))
     for _ in range(40):
         k = nodes_up_to(spectrum, reach, min(capillary, 1.0 / depth))
-        best, size = _likely_breaker(layer, k, w, growth)
-        stop = np.minimum(cap, 4.0 * size)
-        root = first_roots(layer, k[best], w, growth, stop, subharmonic=True)
-        lower_root = root < breaks
-        breaks, breaks_k = np.where(lower_root, root, breaks), np.where(lower_root, k[best], breaks_k)
+        if len(some):
+            best, size = _likely_breaker(layer, k, w[some], growth)
+            stop = np.minimum(cap[some], 4.0 * size)
+            root = first_roots(layer, k[best], w[some], growth, stop, subharmonic=True)
+            better = root < breaks[some]
+            breaks[some[better]], breaks_k[some[better]] = root[better], k[best[better]]
+            some = some[best > 0.7 * len(k)]  # the others have their resonance behind them
         ceiling = np.minimum(cap, breaks)
         needed = matters(layer, k[None, :], w[:, None], ceiling[:, None])
         if not needed[:, -1].any() and (not np.isfinite(depth) or k[-1] * depth >= 3.0):
