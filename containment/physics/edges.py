@@ -180,8 +180,8 @@ def hold_edges(
     kk, ww, top = k[ik], w[iw], ceiling[iw]
 
     # the static sign decides which modes need holding; only they have a lower side
-    falls = layer.coefficient(growth, k).real < 0.0
-    floor = Floor.of(layer, k)
+    floor = Floor.of(layer, k, growth)
+    falls = floor.rest < 0.0
     upper, upper_wave = nodes.breaks.copy(), nodes.breaks_k.copy()
     upper_sub = np.isfinite(upper)
 

@@ -75,14 +75,16 @@ class Floor:
     zeta: Real
     mobility: Real
     spring: Real
+    rest: Real
 
     @classmethod
-    def of(cls, layer: BoundedLayer, k: Real) -> Self:
-        """Take the bounds of a layer at wavenumbers k."""
+    def of(cls, layer: BoundedLayer, k: Real, growth: float) -> Self:
+        """Take the bounds of a layer at wavenumbers k, and its coefficient at rest, A(growth; k)."""
         return cls(
             2.0 / layer.density * layer.static_impedance(k),
             2.0 / layer.density * layer.added_mass(k),
             2.0 / layer.density * np.maximum(layer.stiffness(k), 0.0),
+            np.ascontiguousarray(layer.coefficient(growth, k).real),
         )
 
     def at(self, chosen: npt.NDArray[np.intp], y: Real) -> Real:
@@ -110,25 +112,34 @@ def not_excluded(
         subharmonic  abs(A_0) - a^2 / (abs(A_1) - t) > a
         harmonic     2 a^2 max(0, Re A_1 + t) / (abs(A_1) - t)^2 < A_0
 
-    A_2 is first replaced by its proven floor, and evaluated only where that leaves a doubt.
+    Both are the easier to meet the larger abs(A_0) and abs(A_1). First all coefficients are replaced by their proven
+    floors (Re A_1 by abs(A_1)); where that leaves a doubt A_0 and A_1 are evaluated, and last A_2.
     """
     shift = 0.5 if subharmonic else 0.0
     left = np.arange(len(k))
-    a, a2 = ceiling, ceiling * ceiling
-    for exact in (False, True):
-        here, kl, wl = ik[left], k[left], w[left]
-        first = layer.coefficient(growth + 1j * shift * wl, kl)
-        second = layer.coefficient(growth + 1j * (1.0 + shift) * wl, kl)
-        third = floor.at(here, (2.0 + shift) * wl)
-        if exact:
+    for evaluated in (0, 2, 3):
+        here, kl, wl, a = ik[left], k[left], w[left], ceiling[left]
+        a2 = a * a
+        first, second, third, fourth, fifth = (floor.at(here, (n + shift) * wl) for n in range(5))
+        real = second
+        if not subharmonic:
+            first = floor.rest[here]
+        if evaluated >= 2:
+            exact = layer.coefficient(growth + 1j * (1.0 + shift) * wl, kl)
+            second, real = np.abs(exact), exact.real
+            if subharmonic:
+                first = np.abs(layer.coefficient(growth + 1j * shift * wl, kl))
+        if evaluated >= 3:
             third = np.maximum(third, np.abs(layer.coefficient(growth + 1j * (2.0 + shift) * wl, kl)))
-        fourth, fifth = floor.at(here, (3.0 + shift) * wl), floor.at(here, (4.0 + shift) * wl)
-        t = 2.0 * a2[left] / third
-        gap = np.abs(second) - t
-        if subharmonic:
-            clear = (gap > 0.0) & (np.abs(first) - a2[left] / gap > a[left])
-        else:
-            clear = (gap > 0.0) & (2.0 * a2[left] * np.maximum(0.0, second.real + t) < first.real * gap * gap)
-        clear &= (third * fourth >= 4.0 * a2[left]) & (fourth * fifth >= 4.0 * a2[left])
+        with np.errstate(divide="ignore"):
+            t = np.where(third > 0.0, 2.0 * a2 / third, np.inf)
+        gap = second - t
+        clear = gap > 0.0
+        with np.errstate(divide="ignore", invalid="ignore"):
+            if subharmonic:
+                clear &= first - a2 / gap > a
+            else:
+                clear &= 2.0 * a2 * np.maximum(0.0, real + t) < first * gap * gap
+        clear &= (third * fourth >= 4.0 * a2) & (fourth * fifth >= 4.0 * a2)
         left = left[~clear]
     return left
