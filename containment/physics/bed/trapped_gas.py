@@ -9,7 +9,7 @@ import numpy.typing as npt
 
 from containment.physics.bed.permeability import AIR_DENSITY, AIR_VISCOSITY, gas_velocity
 
-__all__ = ["carrying_drop", "pocket_frequency", "sink_velocity", "support_time"]
+__all__ = ["carrying_drop", "pocket_frequency", "pocket_swing", "sink_velocity", "sudden_drop", "support_time"]
 
 Real = npt.NDArray[np.float64]
 Values = float | Real
@@ -51,6 +51,43 @@ def carrying_drop(
     return result
 
 
+def sudden_drop(
+    *, pocket: Values, bulk_density: Values, depth: Values, ambient_pressure: Values, gravity: float
+) -> Real:
+    """Return how far a bed that lets go at once drops before the pocket throws it back, m; infinite where it cannot.
+
+    Parameters
+    ----------
+    pocket, bulk_density, depth, ambient_pressure, gravity
+        As in `carrying_drop`.
+
+    Notes
+    -----
+    Isothermal gas without leak or friction: the weight's work equals that of the gas, which gives
+    ln(1 + y) = (1 - rho_b g L/p_0) y for y = x/H_0; a little more than twice `carrying_drop`. A bound: gas that leaks in
+    the meantime damps the fall.
+
+    References
+    ----------
+    Gas law and energy balance.
+
+    Examples
+    --------
+    >>> x = sudden_drop(pocket=0.1, bulk_density=1000.0, depth=0.1, ambient_pressure=101325.0, gravity=9.80665)
+    >>> float((1e3 * x).round(3))
+    1.961
+    """
+    load = np.asarray(bulk_density, np.float64) * gravity * np.asarray(depth, np.float64)
+    share = load / np.asarray(ambient_pressure, np.float64)
+    safe = np.where(share < 1.0, share, 0.5)
+    # Newton from above, where the convex difference of the two sides is positive: ln(1 + y) <= y/sqrt(1 + y)
+    y = safe * (2.0 - safe) / (1.0 - safe) ** 2
+    for _ in range(60):
+        y = y - ((1.0 - safe) * y - np.log1p(y)) / ((1.0 - safe) - 1.0 / (1.0 + y))
+    result: Real = np.where(share < 1.0, np.asarray(pocket, np.float64) * y, np.inf)
+    return result
+
+
 def pocket_frequency(
     *, pocket: Values, bulk_density: Values, depth: Values, ambient_pressure: Values, exponent: float = 1.0
 ) -> Real:
@@ -70,6 +107,43 @@ def pocket_frequency(
     w2 = exponent * np.asarray(ambient_pressure, np.float64) / (mass * np.asarray(pocket, np.float64))
     result: Real = np.sqrt(w2) / (2.0 * np.pi)
     return result
+
+
+def pocket_swing(
+    *, amplitude: float, frequency: float, softest: float, stiffest: float
+) -> float:
+    """Return by how much a shaken bed swings against its vessel on the pocket's gas, m; infinite at resonance.
+
+    Parameters
+    ----------
+    amplitude, frequency : float
+        Of the vessel, zero to peak, m; Hz.
+    softest, stiffest : float
+        Bounds of the natural frequency on the gas, Hz (`pocket_frequency` with exponents 1 and 1.4).
+
+    Notes
+    -----
+    Undamped, the largest over the natural frequencies between the bounds: A r^2/|1 - r^2|, r drive over natural frequency.
+    Above resonance no less than A, so that a fast drive is not credited with the bed standing still.
+
+    References
+    ----------
+    Driven mass on a spring, textbook mechanics.
+
+    Examples
+    --------
+    >>> pocket_swing(amplitude=1e-3, frequency=10.0, softest=20.0, stiffest=23.7)
+    0.0003333333333333333
+    >>> pocket_swing(amplitude=1e-3, frequency=22.0, softest=20.0, stiffest=23.7)
+    inf
+    """
+    if frequency < softest:
+        r2 = (frequency / softest) ** 2
+        return amplitude * r2 / (1.0 - r2)
+    if frequency <= stiffest:
+        return float("inf")
+    r2 = (frequency / stiffest) ** 2
+    return max(amplitude, amplitude * r2 / (r2 - 1.0))
 
 
 def sink_velocity(
