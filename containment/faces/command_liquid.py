@@ -1,23 +1,34 @@
 """``containment liquid``: verdict for a liquid layer in an upside-down vessel."""
 
 import argparse
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Final
 
 from containment.errors import InputError
+from containment.faces import case_file
 from containment.faces import options as shared
 
 if TYPE_CHECKING:
     from containment.given.liquid import Liquid
     from containment.given.surroundings import Surroundings
+    from containment.judgement.case import Case
+    from containment.judgement.verdict import Verdict
 
-__all__ = ["add_arguments", "add_liquid", "liquid_from", "run"]
+__all__ = [
+    "NAMES", "add_arguments", "add_case_arguments", "add_liquid", "case_from", "liquid_from", "run", "saved_remark",
+    "verdict_from",
+]  # fmt: skip
+
+ROOM_TEMPERATURE: Final = 293.15
+"""Taken where no temperature is given, K."""
+
+NAMES: Final = "a liquid of the property table, or custom"
 
 
 def add_liquid(parser: argparse.ArgumentParser) -> None:
     """Add the options of the liquid."""
-    parser.add_argument("name", metavar="NAME", help="liquid of the property table, or custom")
+    parser.add_argument("name", metavar="NAME", nargs="?", help=NAMES)
     group = parser.add_argument_group("liquid")
-    group.add_argument("--temperature", metavar="T", default="20 degC", help="default 20degC")
+    group.add_argument("--temperature", metavar="T", help="default 20degC")
     group.add_argument("--density", metavar="RHO", help="in place of the table's, such as 1261kg/m**3")
     group.add_argument("--viscosity", metavar="MU", help="dynamic, in place of the table's, such as 1.41Pa*s")
     group.add_argument("--surface-tension", metavar="GAMMA", help="in place of the table's, such as 63mN/m")
@@ -62,7 +73,7 @@ def surroundings_from(options: argparse.Namespace) -> "Surroundings":
 
     below = None
     if options.below is not None:
-        temperature = shared.quantity(options, "temperature", "temperature", above=0.0, most=5000.0)
+        temperature = _temperature(options)
         below = liquid(options.below, temperature=temperature, tables=options.table or ())
     values = {
         name: shared.quantity(options, name, kind)
@@ -80,15 +91,21 @@ def surroundings_from(options: argparse.Namespace) -> "Surroundings":
     return Surroundings(surface=options.surface, below=below, **given)
 
 
-def add_arguments(parser: argparse.ArgumentParser) -> None:
-    """Add the sub-command's options."""
+def add_case_arguments(parser: argparse.ArgumentParser) -> None:
+    """Add the options that describe a case, which `containment window` takes as well."""
     add_liquid(parser)
     shared.add_vessel(parser, depth="layer")
     shared.add_drive_point(parser)
     shared.add_drive_limits(parser)
     add_process(parser)
     add_surroundings(parser)
+
+
+def add_arguments(parser: argparse.ArgumentParser) -> None:
+    """Add the sub-command's options."""
+    add_case_arguments(parser)
     shared.add_output(parser)
+    case_file.add_case(parser)
 
 
 def liquid_from(options: argparse.Namespace) -> "Liquid":
@@ -106,7 +123,7 @@ def liquid_from(options: argparse.Namespace) -> "Liquid":
             raise InputError(f"--table: {file!r} is not a file that can be read")
     made = liquid(
         options.name,
-        temperature=shared.quantity(options, "temperature", "temperature", above=0.0, most=5000.0),
+        temperature=_temperature(options),
         tables=options.table or (),
         **values,
     )
@@ -117,6 +134,11 @@ def liquid_from(options: argparse.Namespace) -> "Liquid":
 
         made = dataclasses.replace(made, rheology=parse_rheology(options.rheology, "--rheology"))
     return _with_solids(made, options)
+
+
+def _temperature(options: argparse.Namespace) -> float:
+    given = shared.quantity(options, "temperature", "temperature", above=0.0, most=5000.0)
+    return ROOM_TEMPERATURE if given is None else given
 
 
 def _with_solids(made: "Liquid", options: argparse.Namespace) -> "Liquid":
@@ -136,32 +158,67 @@ def _with_solids(made: "Liquid", options: argparse.Namespace) -> "Liquid":
     return slurry(made, solids=solids, max_packing=packing, particle_density=density)
 
 
-def run(options: argparse.Namespace) -> int:
-    """Judge the case and print the verdict; return the exit status."""
-    from containment.judgement.findings import exit_status
+def case_from(options: argparse.Namespace) -> "Case":
+    """Return the case that the options describe, for pictures of it."""
+    from containment.given.waveforms import PURE_SINE
+    from containment.judgement.case import Case, allowance
+
+    vessel, motion = shared.vessel_from(options), shared.motion_from(options)
+    shape = motion.waveform if motion is not None else shared.shape_from(options) or PURE_SINE
+    return Case(
+        liquid_from(options), vessel, allowance(depth=vessel.depth, **_process_from(options)), surroundings_from(options), shape
+    )
+
+
+def _process_from(options: argparse.Namespace) -> dict[str, float | None]:
+    return {
+        "dwell": shared.quantity(options, "dwell", "time", least=1e-3, most=1e10),
+        "unevenness": shared.quantity(options, "unevenness", "length", above=0.0),
+        "amplification": shared.quantity(options, "amplification", "ratio", above=1.0, most=1e6),
+    }
+
+
+def verdict_from(options: argparse.Namespace, *, ranges: bool = False) -> "Verdict":
+    """Judge the case that the options describe."""
     from containment.judgement.verdict import MARGIN_FACTOR, assess
 
     vessel = shared.vessel_from(options)
     motion = shared.motion_from(options)
     drive = shared.drive_from(options)
     factor = shared.quantity(options, "margin", "ratio", least=1.0, most=100.0)
-    verdict = assess(
+    return assess(
         liquid_from(options),
         vessel,
         motion,
-        dwell=shared.quantity(options, "dwell", "time", least=1e-3, most=1e10),
-        unevenness=shared.quantity(options, "unevenness", "length", above=0.0),
-        amplification=shared.quantity(options, "amplification", "ratio", above=1.0, most=1e6),
         drive=drive,
         surroundings=surroundings_from(options),
         shape=shared.shape_from(options) if motion is None else None,
-        ranges=options.detail,
+        ranges=ranges,
         margin_factor=MARGIN_FACTOR if factor is None else factor,
+        **_process_from(options),
     )
+
+
+def saved_remark(verdict: "Verdict") -> str:
+    """Return what a saved case says of its verdict."""
+    from importlib.metadata import version
+
+    return f"verdict when saved, by version {version('containment')}: {verdict.answer.value} ({verdict.reason})"
+
+
+def run(options: argparse.Namespace) -> int:
+    """Judge the case and print the verdict; return the exit status."""
+    case_file.apply_case(options, NAMES)
+    from containment.judgement.findings import exit_status
+
+    verdict = verdict_from(options, ranges=options.detail)
+    if options.save_case is not None:
+        case_file.save_case(options, saved_remark(verdict))
     if options.json:
         import json
 
-        print(json.dumps(verdict.to_dict(), allow_nan=False, ensure_ascii=False, indent=2))
+        result = {**verdict.to_dict(), "case": case_file.case_of(options)}
+        print(json.dumps(result, allow_nan=False, ensure_ascii=False, indent=2))
     else:
         from containment.faces.screen_liquid import liquid_screen
 

@@ -120,10 +120,9 @@ def not_excluded(
     for evaluated in (0, 2, 3):
         here, kl, wl, a = ik[left], k[left], w[left], ceiling[left]
         a2 = a * a
-        first, second, third, fourth, fifth = (floor.at(here, (n + shift) * wl) for n in range(5))
+        first = floor.at(here, shift * wl) if subharmonic else floor.rest[here]
+        second, third, fourth = (floor.at(here, (n + shift) * wl) for n in (1, 2, 3))
         real = second
-        if not subharmonic:
-            first = floor.rest[here]
         if evaluated >= 2:
             exact = layer.coefficient(growth + 1j * (1.0 + shift) * wl, kl)
             second, real = np.abs(exact), exact.real
@@ -140,6 +139,8 @@ def not_excluded(
                 clear &= first - a2 / gap > a
             else:
                 clear &= 2.0 * a2 * np.maximum(0.0, real + t) < first * gap * gap
-        clear &= (third * fourth >= 4.0 * a2) & (fourth * fifth >= 4.0 * a2)
+        clear &= third * fourth >= 4.0 * a2
+        if evaluated >= 3:  # else the next product is larger, as the floors rise with n
+            clear &= fourth * floor.at(here, (4.0 + shift) * wl) >= 4.0 * a2
         left = left[~clear]
     return left
