@@ -4,14 +4,18 @@ import math
 from typing import Final
 
 import numpy as np
+import numpy.typing as npt
 
 from containment.given.vessel import Annulus, Box, Cylinder, Slot
 from containment.given.waveforms import PURE_SINE
 from containment.judgement.case import Case
 from containment.judgement.findings import Caution, Limit
 from containment.judgement.operating_point import OperatingPoint
+from containment.physics.layers import LayerModel
 
-__all__ = ["companion_limits", "gas_caution"]
+__all__ = ["companion_limits", "dragged_layer", "gas_caution", "tilt_modes"]
+
+Real = npt.NDArray[np.float64]
 
 WALL_DRAG: Final = "lower edge with the drag of the side walls"
 COVERED_LOWER: Final = "lower edge if a skin covers the surface"
@@ -37,16 +41,16 @@ def _edge_limit(name: str, value: float, bound: float, *, above: bool, source: s
     return Limit(name=name, value=value, bound=finite, unit="m/s^2", ok=ok, source=source, ratio=ratio, remark=remark)
 
 
-def _wall_drag(case: Case, point: OperatingPoint) -> list[Limit]:
-    """Return the lower edge with the drag of the walls, which weakens the hold; the upper edge is left without it."""
+def dragged_layer(case: Case) -> LayerModel | None:
+    """Return the layer with the drag of its side walls, for the lower edge; None where that is not modelled."""
     vessel, around = case.vessel, case.surroundings
-    if vessel.narrowest is None or around.below is not None or around.cushion is not None or point.lower == 0.0:
-        return []
+    if vessel.narrowest is None or around.below is not None or around.cushion is not None:
+        return None
     from containment.physics import wall_drag
     from containment.physics.dispersion import Layer
 
     if not isinstance(case.layer, Layer):
-        return []
+        return None
     spectrum, depth = case.spectrum, vessel.depth
     match vessel:
         case Cylinder():
@@ -60,13 +64,24 @@ def _wall_drag(case: Case, point: OperatingPoint) -> list[Limit]:
         case Slot():
             factors = wall_drag.slot_wall_factors(spectrum, width=vessel.width, depth=depth)
         case _:
-            return []
+            return None
+    return wall_drag.DraggedLayer(layer=case.layer, wall_factor=factors)
+
+
+def _wall_drag(case: Case, point: OperatingPoint) -> list[Limit]:
+    """Return the lower edge with the drag of the walls, which weakens the hold; the upper edge is left without it."""
+    layer = dragged_layer(case) if point.lower > 0.0 else None
+    if layer is None:
+        return []
+    from containment.physics import wall_drag
+
     share = float(
         wall_drag.boundary_layer_share(
-            point.frequency, kinematic_viscosity=case.liquid.viscosity / case.liquid.density, width=vessel.narrowest
+            point.frequency, kinematic_viscosity=case.liquid.viscosity / case.liquid.density,
+            width=case.vessel.narrowest,  # type: ignore[arg-type]
         )
     )
-    lower = case.lower_edge(point.frequency, layer=wall_drag.DraggedLayer(layer=case.layer, wall_factor=factors))
+    lower = case.lower_edge(point.frequency, layer=layer)
     remark = f"boundary layer {share:.2g} of the width"
     if share > _THIN_LAYER:
         remark += "; too thick for the formula, an estimate only"
@@ -94,26 +109,38 @@ def _covered(case: Case, point: OperatingPoint) -> list[Limit]:
     ]
 
 
-def _tilt(case: Case, point: OperatingPoint) -> list[Limit]:
+def tilt_modes(case: Case) -> tuple[Real, Real]:
+    """Return the wavenumbers that a tilt moves (1/m) and the part of the slope that each takes at the wall (m).
+
+    Both are empty where no tilt is considered.
+    """
     vessel = case.vessel
-    if case.surroundings.below is not None or point.lower == 0.0 or not point.inside or case.liquid.rheology is not None:
-        return []
+    none = np.empty(0)
+    if case.surroundings.below is not None or case.liquid.rheology is not None:
+        return none, none
     from containment.physics import tilt
 
     spectrum = case.spectrum
     few = 40
     if isinstance(vessel, Cylinder):
         ones = spectrum.discrete[spectrum.first == 1][:few]
-        heights = tilt.cylinder_tilt_heights(ones, radius=0.5 * vessel.diameter)
-    elif isinstance(vessel, Annulus):
+        return ones, tilt.cylinder_tilt_heights(ones, radius=0.5 * vessel.diameter)
+    if isinstance(vessel, Annulus):
         ones = spectrum.discrete[spectrum.first == 1][:few]
-        heights = tilt.annulus_tilt_heights(ones, inner=0.5 * vessel.inner_diameter, outer=0.5 * vessel.outer_diameter)
-    elif isinstance(vessel, Slot | Box):
+        return ones, tilt.annulus_tilt_heights(ones, inner=0.5 * vessel.inner_diameter, outer=0.5 * vessel.outer_diameter)
+    if isinstance(vessel, Slot | Box):
         width = max(vessel.width, vessel.length) if isinstance(vessel, Box) else vessel.width
         waves = np.arange(1, 2 * few, 2)
-        ones, heights = waves * math.pi / width, tilt.box_tilt_heights(waves, width=width)
-    else:
+        return waves * math.pi / width, tilt.box_tilt_heights(waves, width=width)
+    return none, none
+
+
+def _tilt(case: Case, point: OperatingPoint) -> list[Limit]:
+    ones, heights = tilt_modes(case) if point.lower > 0.0 and point.inside else (np.empty(0), np.empty(0))
+    if not len(ones):
         return []
+    from containment.physics import tilt
+
     a = point.acceleration * float(case.gain(point.frequency)[0])
     lower = case.lower_roots(point.frequency, ones)
     if np.any((case.layer.stiffness(ones) < 0.0) & (lower == 0.0)):
@@ -121,7 +148,7 @@ def _tilt(case: Case, point: OperatingPoint) -> list[Limit]:
     stiffness = tilt.mean_stiffness(
         ones, a, lower, density=case.liquid.density, surface_tension=case.liquid.surface_tension
     )
-    bound = float(tilt.largest_tilt(heights, stiffness, freeboard=0.1 * vessel.depth))
+    bound = float(tilt.largest_tilt(heights, stiffness, freeboard=0.1 * case.vessel.depth))
     asked = case.surroundings.tilt or 0.0
     return [
         Limit(

@@ -17,7 +17,7 @@ from containment.physics.floquet import exponents, growing_exponents
 from containment.physics.hill import Half, rows_needed
 from containment.physics.layers import LayerModel
 
-__all__ = ["OperatingPoint", "judged_point"]
+__all__ = ["OperatingPoint", "growing_modes", "judged_point"]
 
 Real = npt.NDArray[np.float64]
 
@@ -124,6 +124,19 @@ def judged_point(case: Case, *, frequency: float, acceleration: float) -> Operat
         farthest_from_integer=max(part.distance for part in parts), lower_error=errors[0], upper_error=errors[1],
         complete=not far,
     )  # fmt: skip
+
+
+def growing_modes(case: Case, *, frequency: float, acceleration: float) -> tuple[int, bool]:
+    """Return the count of growing modes of a layer over open gas under a sine, and whether it is proven.
+
+    The same count as in `judged_point`, without edges and growth rates: Hz and peak m/s^2.
+    """
+    w = 2.0 * math.pi * frequency
+    k, _, resolved = _wavenumbers(case, case.layer, w, acceleration)
+    if not len(k):
+        return 0, resolved
+    count = _settled_count(case.layer, k, w, acceleration, case.allowance.growth)
+    return int(np.count_nonzero(count.growing > 0)), resolved and bool(count.proven.all())
 
 
 def _counted_by_order(case: Case, edges: Edges, strict: Edges, acceleration: float) -> OperatingPoint:
