@@ -10,7 +10,7 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
-__all__ = ["COLOURS", "INK", "entitle", "halo", "new_picture", "tidy_log_axis"]
+__all__ = ["COLOURS", "INK", "entitle", "halo", "new_picture", "new_row", "tidy_log_axis"]
 
 INK: Final = "#22262b"
 """Text, axes, marks."""
@@ -30,6 +30,12 @@ COLOURS: Final = {
 
 def new_picture(*, width: float = 6.9, height: float = 4.6) -> "tuple[Figure, Axes]":
     """Return an empty picture and its axes; sizes in inch (6.9 in fit the text width of A4 and Letter)."""
+    figure, (axes,) = new_row(width=width, height=height, ratios=(1.0,))
+    return figure, axes
+
+
+def new_row(*, width: float = 6.9, height: float, ratios: tuple[float, ...]) -> "tuple[Figure, list[Axes]]":
+    """Return an empty picture with axes side by side, their widths in the given ratios."""
     import matplotlib
     from matplotlib.backends.backend_agg import FigureCanvasAgg
     from matplotlib.figure import Figure
@@ -43,8 +49,8 @@ def new_picture(*, width: float = 6.9, height: float = 4.6) -> "tuple[Figure, Ax
     with matplotlib.rc_context(style):
         figure = Figure(figsize=(width, height), layout="constrained")
         FigureCanvasAgg(figure)
-        axes = figure.add_subplot()
-    return figure, axes
+        row = figure.subplots(1, len(ratios), width_ratios=ratios, squeeze=False)[0]
+    return figure, list(row)
 
 
 def entitle(axes: "Axes", title: str) -> None:
