@@ -4,7 +4,7 @@ import argparse
 from typing import TYPE_CHECKING, Final
 
 from containment.errors import InputError
-from containment.faces import case_file
+from containment.faces import case_file, report_file
 from containment.faces import options as shared
 
 if TYPE_CHECKING:
@@ -104,7 +104,7 @@ def add_case_arguments(parser: argparse.ArgumentParser) -> None:
 def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Add the sub-command's options."""
     add_case_arguments(parser)
-    shared.add_output(parser)
+    report_file.add_report(shared.add_output(parser))
     case_file.add_case(parser)
 
 
@@ -208,10 +208,16 @@ def saved_remark(verdict: "Verdict") -> str:
 
 def run(options: argparse.Namespace) -> int:
     """Judge the case and print the verdict; return the exit status."""
+    if options.report is not None:
+        report_file.refuse_unless_writable(options.report)
     case_file.apply_case(options, NAMES)
     from containment.judgement.findings import exit_status
 
-    verdict = verdict_from(options, ranges=options.detail)
+    verdict = verdict_from(options, ranges=options.detail or options.report is not None)
+    if options.report is not None:
+        from containment.faces.report_liquid import report_liquid
+
+        report_liquid(options, case_from(options), verdict)
     if options.save_case is not None:
         case_file.save_case(options, saved_remark(verdict))
     if options.json:

@@ -5,12 +5,10 @@ import sys
 from typing import TYPE_CHECKING
 
 from containment.errors import InputError
-from containment.faces import case_file, command_liquid
+from containment.faces import case_file, command_liquid, report_file
 
 if TYPE_CHECKING:
     from containment.faces.window_view import WindowView
-    from containment.judgement.case import Case
-    from containment.judgement.verdict import Verdict
 
 __all__ = ["add_arguments", "run"]
 
@@ -32,6 +30,7 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--rows", action="store_true", help="the numbers as CSV, SI units")
     group.add_argument("--json", action="store_true", help="verdict and numbers as one JSON object, SI units")
     group.add_argument("--plain", action="store_true", help="no colour and no boxes")
+    report_file.add_report(group)
     case_file.add_case(parser)
 
 
@@ -43,14 +42,19 @@ def run(options: argparse.Namespace) -> int:
         from containment.faces.picture_file import refuse_unless_drawable
 
         refuse_unless_drawable(options.chart, "--chart")
+    if options.report is not None:
+        report_file.refuse_unless_writable(options.report)
     case_file.apply_case(options, command_liquid.NAMES)
+    from containment.faces.report_liquid import report_liquid, view_of
     from containment.faces.window_view import refuse_without_window
     from containment.judgement.findings import exit_status
 
     case = command_liquid.case_from(options)
     refuse_without_window(case)
-    verdict = command_liquid.verdict_from(options)
-    view = _view(options, case, verdict)
+    verdict = command_liquid.verdict_from(options, ranges=options.report is not None)
+    view = view_of(case, verdict, against=options.against)
+    if options.report is not None:
+        report_liquid(options, case, verdict)
     if options.save_case is not None:
         case_file.save_case(options, command_liquid.saved_remark(verdict))
     if options.chart is not None:
@@ -72,23 +76,6 @@ def run(options: argparse.Namespace) -> int:
 
         window_screen(verdict, view, plain=options.plain, chart_file=options.chart).show()
     return exit_status(verdict.answer, verdict.proven)
-
-
-def _view(options: argparse.Namespace, case: "Case", verdict: "Verdict") -> "WindowView":
-    from containment.faces.window_view import window_view
-    from containment.judgement.verdict import holding_window
-
-    window = verdict.window
-    if window is None and not verdict.holds_unshaken:  # a drive point that holds says nothing of the rest
-        window = holding_window(
-            case.liquid, case.vessel, dwell=case.allowance.dwell, unevenness=case.allowance.unevenness,
-            amplification=case.allowance.amplification, drive=verdict.drive, surroundings=case.surroundings,
-            shape=case.waveform,
-        )  # fmt: skip
-    point = None if verdict.point is None else (verdict.point.frequency, verdict.point.acceleration)
-    return window_view(
-        case, window, verdict.drive, against=options.against, point=point, margin_factor=verdict.margin_factor
-    )
 
 
 def _print_rows(view: "WindowView") -> None:

@@ -77,12 +77,13 @@ def add_drive_limits(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--frequency-range", metavar="LO:HI", help="such as 5Hz:60Hz")
 
 
-def add_output(parser: argparse.ArgumentParser) -> None:
-    """Add the options of the output."""
+def add_output(parser: argparse.ArgumentParser) -> "argparse._ArgumentGroup":
+    """Add the options of the output and return their group."""
     group = parser.add_argument_group("output")
     group.add_argument("--json", action="store_true", help="one JSON object, SI units, nothing else")
     group.add_argument("--plain", action="store_true", help="no colour and no boxes")
     group.add_argument("--detail", action="store_true", help="sources, method and digits as well")
+    return group
 
 
 def vessel_from(options: argparse.Namespace) -> "Vessel":

@@ -79,6 +79,7 @@ def inline_svg(figure: "Figure", *, name: str, text: str) -> str:
     svg = stream.getvalue()
     svg = svg[svg.index("<svg") :]
     svg = re.sub(r"<metadata>.*?</metadata>", "", svg, flags=re.DOTALL)
+    svg = re.sub(r'\bd="[^"]*"', lambda path: re.sub(r"(\.\d\d)\d+", r"\1", path.group()), svg)  # hundredths of a point do
     svg = re.sub(r'\bid="', f'id="{name}-', svg)
     svg = re.sub(r'(href="#|url\(#)', rf"\g<1>{name}-", svg)
     svg = re.sub(r'(<svg[^>]*?) width="[^"]*"', r"\1", svg, count=1)

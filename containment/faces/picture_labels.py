@@ -60,7 +60,6 @@ class Labels:
         self._taken += [(place[0] + shift, place[1]) for shift in (-20.0, 0.0, 20.0)]
         word = self._axes.text(*self._place(*place), "HELD", ha="center", va="center", fontsize=12, fontweight="bold", zorder=5)
         word.set_in_layout(False)
-        halo(word)
 
     def write_along(self, curve: Real, words: str, colour: str, *, side: int, share: float) -> None:
         """Write words along a curve (not-a-number where it is not drawn), above (1) or below (-1) it.

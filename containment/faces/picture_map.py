@@ -88,7 +88,8 @@ def map_points(file: str | Path, *, x: str, y: str, answer: str = "verdict") -> 
         raise InputError(f"{path.name}: cannot be read: {error}") from error
     if not found:
         raise InputError(f"{path.name}: no case has {x}, {y} and {answer}; expected numbers under the first two")
-    return MapPoints(*([case[i] for case in found] for i in range(3)), left_out=left_out)
+    xs, ys, answers = zip(*found, strict=True)
+    return MapPoints(xs, ys, answers, left_out)
 
 
 def _is_number(value: Any) -> bool:

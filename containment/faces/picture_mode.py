@@ -17,7 +17,7 @@ __all__ = ["draw_mode", "mode_shape"]
 
 Real = npt.NDArray[np.float64]
 
-_NODES = 161
+_NODES = 101
 
 
 def mode_shape(vessel: Vessel, wavenumber: float) -> tuple[Real, Real, Real] | None:

@@ -44,8 +44,10 @@ def draw_tornado(rows: Sequence[Sensitivity], margin: float, *, margin_factor: f
                       hatch="////" if kind == "falls" else "", edgecolor="white", linewidth=0.0)  # fmt: skip
             if abs(value - margin) > 0.01 * span:
                 sign = 1 if value > margin else -1
-                axes.annotate(f"{value:.3g}", (value, i + shift), xytext=(3 * sign, 0), textcoords="offset points", va="center",
-                              ha="left" if sign > 0 else "right", fontsize=6.5, zorder=5)  # fmt: skip
+                axes.annotate(
+                    f"{value:#.3g}", (value, i + shift), xytext=(3 * sign, 0), textcoords="offset points", va="center",
+                    ha="left" if sign > 0 else "right", fontsize=6.5, zorder=5,
+                )  # fmt: skip
     axes.axvline(margin, color=INK, linewidth=1.0, zorder=4)
     axes.axvline(1.0, color=COLOURS["falls"], linewidth=1.0, linestyle=(0, (4, 2)), zorder=2)
     axes.axvline(margin_factor, color=COLOURS["drive"], linewidth=0.9, linestyle=(0, (1, 1.5)), zorder=2)
@@ -66,7 +68,7 @@ def tornado_words(rows: Sequence[Sensitivity], margin: float) -> str:
     """Return the picture in words."""
     parts = [f"Sensitivity of the margin of {margin:.3g}, one input at a time:"]
     parts += [
-        f"{row.name} {100 * row.change:.2g} % lower {row.low:.3g}, higher {row.high:.3g};"
+        f"{row.name} {100 * row.change:.2g} % lower {row.low:#.3g}, higher {row.high:#.3g};"
         for row in rows if math.isfinite(row.low) and math.isfinite(row.high)
     ]  # fmt: skip
     return " ".join(parts)

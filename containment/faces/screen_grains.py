@@ -46,9 +46,11 @@ def grains_headline(verdict: BedVerdict) -> tuple[str, str, str]:
     return word, verb, verdict.reason
 
 
-def grains_screen(verdict: BedVerdict, *, plain: bool = False, detail: bool = False) -> Screen:
-    """Build the screen of a verdict."""
-    screen = Screen(plain=plain)
+def grains_screen(
+    verdict: BedVerdict, *, plain: bool = False, detail: bool = False, onto: Screen | None = None
+) -> Screen:
+    """Build the screen of a verdict, or put it onto the page of a report."""
+    screen = Screen(plain=plain) if onto is None else onto
     screen.verdict(verdict.answer, *grains_headline(verdict))
     _case(screen, verdict)
     _mechanisms(screen, verdict)

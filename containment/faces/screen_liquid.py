@@ -55,9 +55,11 @@ def headline(verdict: Verdict) -> tuple[str, str, str]:
     return word, f"shaking keeps {name} in the upside-down vessel, from {start}", verdict.reason
 
 
-def liquid_screen(verdict: Verdict, *, plain: bool = False, detail: bool = False) -> Screen:
-    """Build the screen of a verdict."""
-    screen = Screen(plain=plain)
+def liquid_screen(
+    verdict: Verdict, *, plain: bool = False, detail: bool = False, onto: Screen | None = None
+) -> Screen:
+    """Build the screen of a verdict, or put it onto the page of a report."""
+    screen = Screen(plain=plain) if onto is None else onto
     screen.verdict(verdict.answer, *headline(verdict))
     _case(screen, verdict)
     if verdict.point is not None:

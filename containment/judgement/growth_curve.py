@@ -9,6 +9,7 @@ import numpy.typing as npt
 
 from containment.given.waveforms import PURE_SINE
 from containment.judgement.case import Case
+from containment.judgement.rheology import depends_on_shear
 from containment.physics.floquet import exponents, growing_exponents, static_growth_rate
 
 __all__ = ["GrowthCurve", "growth_curve"]
@@ -68,7 +69,9 @@ def growth_curve(case: Case, *, frequency: float, acceleration: float) -> Growth
     >>> bool(curve.at_rest.max() > 1.0), bool(curve.mode_rates.max() < 0.0)
     (True, True)
     """
-    if case.vessel.contact_line == "pinned" or case.waveform is not PURE_SINE or case.surroundings.cushion is not None:
+    if depends_on_shear(case.liquid) or case.vessel.contact_line == "pinned":
+        return None
+    if case.waveform is not PURE_SINE or case.surroundings.cushion is not None:
         return None
     w = 2.0 * math.pi * frequency
     modes = case.spectrum.discrete[:_MOST_MODES]
