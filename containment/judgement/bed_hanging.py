@@ -5,12 +5,12 @@ from typing import Final
 
 from containment.constants import STANDARD_GRAVITY
 from containment.judgement.bed_case import BedCase, Judged, Mechanism, better, worse
+from containment.judgement.bed_face import lower_face, powder_below_arch
 from containment.judgement.bed_upright import QUIET_GAMMA
 from containment.judgement.findings import Answer, seconds_text
-from containment.physics.bed.cohesion import bond_number, contact_force, tensile_strength
-from containment.physics.bed.permeability import reynolds_number
+from containment.physics.bed.permeability import permeability, reynolds_number
 from containment.physics.bed.powder_group import powder_group
-from containment.physics.bed.trapped_gas import carrying_drop, pocket_frequency, sink_velocity, support_time
+from containment.physics.bed.trapped_gas import pocket_swing, sink_velocity, sudden_drop, support_time
 from containment.physics.bed.wall_plug import plug_load, wall_shear_strength
 
 __all__ = ["FREE_FLOWING", "judge_open_bottom", "judge_pocket"]
@@ -21,35 +21,36 @@ FREE_FLOWING: Final = (
 )
 """The one sentence that a free-flowing bed upside-down gets."""
 
+_UNLOADED: Final = "each stroke may unload the arch that presses the plug against the wall"
+_SPALLS: Final = "the plug itself is carried, but pieces may break off below the arch that carries it"
+
 
 def judge_open_bottom(case: BedCase) -> Judged:
     """Return what a bed in a tube without bottom does: the wall must carry it, and its lower face must hold together."""
-    plug, face = _plug(case), _lower_face(case)
-    answer, reason, binding = _hanging(case, plug, face)
+    found = _supports(case)
+    answer, reason, binding = _hanging(case, *found)
     return Judged(
-        answer=answer, reason=reason, binding=binding, mechanisms=(plug, face),
+        answer=answer, reason=reason, binding=binding.name, mechanisms=found,
         holding_time=0.0 if answer is Answer.NOT_HELD else None,
     )  # fmt: skip
 
 
 def judge_pocket(case: BedCase) -> Judged:
     """Return what a bed upside-down under a pocket of gas does: a plug holds it for good, the gas for a time."""
-    plug, face = _plug(case), _lower_face(case)
-    answer, reason, binding = _hanging(case, plug, face)
+    plug, face, below = _supports(case)
+    answer, reason, binding = _hanging(case, plug, face, below)
     drop, span, time = _gas(case)
-    found = (plug, face, drop, span)
+    found = (plug, face, below, drop, span)
     assert drop.answer is not None and span.answer is not None and face.answer is not None
     carried = worse(drop.answer, span.answer, face.answer)
     if better(answer, carried) is answer and answer is not Answer.NOT_HELD:
-        return Judged(answer=answer, reason=reason, binding=binding, mechanisms=found)
-    if case.material.free_flowing:
-        return Judged(answer=Answer.NOT_HELD, reason=FREE_FLOWING, binding=face.name, mechanisms=found, holding_time=0.0)
-    if face.answer is Answer.NOT_HELD:
+        return Judged(answer=answer, reason=reason, binding=binding.name, mechanisms=found)
+    if case.material.free_flowing or face.answer is Answer.NOT_HELD:
         return Judged(answer=Answer.NOT_HELD, reason=reason, binding=face.name, mechanisms=found, holding_time=0.0)
     if drop.answer is Answer.NOT_HELD:
         return Judged(
             answer=Answer.NOT_HELD, binding=drop.name, mechanisms=found, holding_time=0.0,
-            reason="the wall does not carry it, and it drops further than allowed before the gas does",
+            reason="the wall does not carry it, and it drops and swings further than allowed on the gas",
         )  # fmt: skip
     wanted = "for ever" if case.dwell is None else f"for {seconds_text(case.dwell)}"
     word = {
@@ -61,20 +62,30 @@ def judge_pocket(case: BedCase) -> Judged:
     return Judged(answer=carried, reason=word[carried], binding=weakest.name, mechanisms=found, holding_time=time)
 
 
-def _hanging(case: BedCase, plug: Mechanism, face: Mechanism) -> tuple[Answer, str, str]:
-    assert plug.answer is not None and face.answer is not None
+def _supports(case: BedCase) -> tuple[Mechanism, Mechanism, Mechanism]:
+    slope = min(case.material.wall_friction, 1.0)
+    return _plug(case), lower_face(case), powder_below_arch(case, span=case.vessel.narrowest, slope=slope)
+
+
+def _hanging(case: BedCase, plug: Mechanism, face: Mechanism, below: Mechanism) -> tuple[Answer, str, Mechanism]:
+    """Return what the plug says with its lower face, why, and what binds."""
+    assert plug.answer is not None and face.answer is not None and below.answer is not None
     if case.material.free_flowing:
-        return Answer.NOT_HELD, FREE_FLOWING, face.name
-    answer = worse(plug.answer, face.answer)
-    binding = face if (face.ratio or 0.0) < (plug.ratio or 0.0) else plug
+        return Answer.NOT_HELD, FREE_FLOWING, face
+    answer = worse(plug.answer, face.answer, below.answer)
     if answer is Answer.HELD:
-        return answer, "the wall carries the bed as a plug", binding.name
-    binding = face if face.answer is answer and plug.answer is not answer else plug
+        return answer, "the wall carries the bed as a plug", min(plug, face, key=lambda m: m.ratio or 0.0)
+    binding = next(m for m in (plug, face, below) if m.answer is answer)
+    if binding is below:
+        short = (below.ratio or 0.0) < 1.0
+        return answer, _SPALLS if short else case.shortfall(f"the {below.name}", math.inf), below
     if answer is Answer.MARGINAL:
-        return answer, case.shortfall(f"the {binding.name}", binding.ratio or 0.0), binding.name
+        if binding is plug and (plug.ratio or 0.0) >= case.strength_margin and case.gamma > QUIET_GAMMA:
+            return answer, _UNLOADED, plug
+        return answer, case.shortfall(f"the {binding.name}", binding.ratio or 0.0), binding
     if binding is plug:
-        return answer, "the powder is too weak for the wall to carry it: the plug slides out", plug.name
-    return answer, "grains of the lower face weigh more than their contacts bear: they rain off", face.name
+        return answer, "the powder is too weak for the wall to carry it: the plug slides out", plug
+    return answer, "grains of the lower face weigh more than their contacts bear: they rain off", face
 
 
 def _plug(case: BedCase) -> Mechanism:
@@ -94,25 +105,13 @@ def _plug(case: BedCase) -> Mechanism:
     ratio = strength / load
     answer = Answer.NOT_HELD if material.free_flowing else case.graded(ratio)
     remark = "free-flowing: nothing presses it against the wall" if material.free_flowing else "weight times 1 + Gamma"
+    if case.gamma > QUIET_GAMMA and not material.free_flowing:
+        # the wall's friction lives on the thrust of the arch, which a bed without weight for part of a stroke has not
+        answer = worse(answer, Answer.MARGINAL)
+        remark += f"; above Gamma {QUIET_GAMMA:g} {_UNLOADED}"
     return Mechanism(
         name="plug on the wall", answer=answer, value=load, bound=strength, unit="Pa", ratio=ratio, source=source,
         remark=remark,
-    )  # fmt: skip
-
-
-def _lower_face(case: BedCase) -> Mechanism:
-    material = case.material
-    tension = float(tensile_strength(material.yield_strength, friction_angle=material.angle_of_repose))
-    force = float(contact_force(tension, diameter=material.d50, voidage=material.voidage))
-    # the contact is that of the mean grain; the heaviest grain has to hang from such a contact
-    bond = float(
-        bond_number(force, diameter=material.d90, particle_density=material.particle_density, gravity=STANDARD_GRAVITY)
-    )
-    needed = 1.0 + case.gamma
-    return Mechanism(
-        name="lower face of the bed", answer=case.graded(bond / needed), value=needed, bound=bond,
-        unit="", ratio=bond / needed, source="Rumpf 1962, from memory; force balance",
-        remark="Bond number of the coarse grains (d90) on contacts of the mean strength",
     )  # fmt: skip
 
 
@@ -120,21 +119,14 @@ def _gas(case: BedCase) -> tuple[Mechanism, Mechanism, float]:
     """Return the drop and the time of the gas support, and that time, s."""
     material, depth, pocket = case.material, case.vessel.depth, case.setting.size or 0.0
     g, p = STANDARD_GRAVITY, case.ambient_pressure
-    first = float(
-        carrying_drop(
-            pocket=pocket, bulk_density=material.bulk_density, depth=depth, ambient_pressure=p, gravity=g
-        )
-    )
+    bed = {"pocket": pocket, "bulk_density": material.bulk_density, "depth": depth, "ambient_pressure": p}
+    first = float(sudden_drop(**bed, gravity=g))
     swing = 0.0
     if case.gamma > 0.0 and case.frequency is not None and pocket > 0.0:
-        own = float(
-            pocket_frequency(pocket=pocket, bulk_density=material.bulk_density, depth=depth, ambient_pressure=p)
-        )
-        r2 = (case.frequency / own) ** 2
-        amplitude = case.gamma * g / (2.0 * math.pi * case.frequency) ** 2
-        # below its resonance on the gas the bed swings by the undamped answer; the quasi-static part of the load is the
-        # least, so that a fast drive is not credited with standing still
-        swing = amplitude * r2 / abs(1.0 - r2) if r2 < 1.0 else max(amplitude * r2 / (r2 - 1.0), amplitude)
+        w = 2.0 * math.pi * case.frequency
+        # the tighter of the two permeabilities in use leaks, and so damps, less
+        k = float(permeability(diameter=material.d50, voidage=material.voidage))
+        swing = pocket_swing(amplitude=case.gamma * g / (w * w), angular_frequency=w, permeability=k, **bed)
     total = first + swing
     allowed = case.allowed_drop
     # at the heaviest moment of the stroke: a bound also where the bed meets the lid and gas is let in but not out
@@ -149,7 +141,8 @@ def _gas(case: BedCase) -> tuple[Mechanism, Mechanism, float]:
         name="drop until the gas carries it", answer=Answer.HELD if total < allowed else Answer.NOT_HELD,
         value=total if math.isfinite(total) else None, bound=allowed, unit="m",
         ratio=allowed / total if total > 0.0 and math.isfinite(total) else None,
-        source="isothermal gas, force balance; swing of a mass on the gas as a spring", remark="bound: the allowed drop",
+        source="isothermal gas, energy balance; swing of a mass on the gas as a spring",
+        remark="let go at once, and swinging at its worst on the gas" if swing else "let go at once",
     )  # fmt: skip
     channels = powder_group(diameter=material.d50, particle_density=material.particle_density) == "C"
     if case.dwell is None or time < case.dwell:

@@ -1,7 +1,10 @@
 """Judgement of a bed over an outlet: too coarse to pass, arched by cohesion, arched by chance, or pouring."""
 
+from typing import Final
+
 from containment.constants import STANDARD_GRAVITY
-from containment.judgement.bed_case import BedCase, Judged, Mechanism, better
+from containment.judgement.bed_case import BedCase, Judged, Mechanism, better, worse
+from containment.judgement.bed_face import BELOW_ARCH, lower_face, powder_below_arch
 from containment.judgement.bed_upright import QUIET_GAMMA
 from containment.judgement.findings import Answer, seconds_text
 from containment.physics.bed.arching import ARCH_RATIO, grains_before_arch, lasting_arch_outlet, passes_outlet
@@ -10,44 +13,64 @@ from containment.physics.bed.discharge import SHAKEN_FACTOR, discharge_rate, slo
 
 __all__ = ["judge_outlet"]
 
-_TOO_FINE = 4e-4
+_TOO_FINE: Final = 4e-4
+_ARCH: Final = "cohesive arch"
 
 
 def judge_outlet(case: BedCase) -> Judged:
     """Return what a bed over a round outlet or a slot does at the case's level of shaking."""
-    supports = [_too_coarse(case), _cohesive_arch(case), _chance_arch(case)]
-    answers = [m.answer for m in supports if m.answer is not None]
-    answer = better(*answers)
-    binding = next(m for m in supports if m.answer is answer)
+    coarse, arch, chance = _too_coarse(case), _cohesive_arch(case), _chance_arch(case)
+    # the arch alone does not hold the bed: what is below it has to hang
+    arched = [arch]
+    if not case.material.free_flowing:
+        size = case.setting.size or 0.0
+        arched += [lower_face(case, opening=size), powder_below_arch(case, span=size, slope=1.0)]
+    cohesive = worse(*(m.answer for m in arched if m.answer is not None))
+    supports = ((coarse, coarse.answer), (arch, cohesive), (chance, chance.answer))
+    answer = better(*(said for _, said in supports if said is not None))
+    held_by = next(m for m, said in supports if said is answer)
+    weakest = next(m for m in arched if m.answer is cohesive)
     figures = _discharge(case)
+    found = (coarse, *arched, chance, *figures)
     if answer is Answer.NOT_HELD:
-        binding, reason = figures[0], "the grains flow freely through the outlet"
-        if not case.material.free_flowing:
-            binding = supports[1]
-            reason = "the outlet is wider than the powder can arch over"
-            if (binding.ratio or 0.0) >= 1.0:
-                reason = "the bed lands on its arch in each stroke, and the arch has too little in hand for that shock"
-        elif float(lasting_arch_outlet(diameter=case.material.d10)) > (case.setting.size or 0.0) > 0.0:
-            binding = supports[2]
-            reason = "each stroke unloads the grains' arch and breaks it" if _round(case) else (
-                "no size is known below which a slot stays blocked"
-            )
-        return Judged(answer=answer, reason=reason, binding=binding.name, mechanisms=(*supports, *figures), holding_time=0.0)
-    words = {
-        supports[0].name: "the grains are too coarse for the outlet",
-        supports[1].name: "the cohesive arch bears the load",
-        supports[2].name: "only an arch formed by chance blocks the outlet, and any knock may break it",
-    }
-    reason = words[binding.name]
-    if answer is Answer.MARGINAL and binding is supports[1]:
-        reason = (
-            "the arch would bear the load, but the bed may lift off and land on it in each stroke"
-            if case.gamma > QUIET_GAMMA and case.material.strength_measured
-            else case.shortfall("the cohesive arch", binding.ratio or 0.0)
+        binding, reason = _why_lost(case, weakest, chance, figures[0])
+        return Judged(answer=answer, reason=reason, binding=binding.name, mechanisms=found, holding_time=0.0)
+    if held_by is arch:
+        reason = "the cohesive arch bears the load"
+        if answer is Answer.MARGINAL:
+            return Judged(answer=answer, reason=_why_doubtful(case, weakest), binding=weakest.name, mechanisms=found)
+    elif held_by is coarse:
+        reason = f"the grains are too coarse for the outlet, as long as none is finer than {1e3 * coarse.value:.3g} mm" if (
+            answer is Answer.HELD and coarse.value is not None
+        ) else "most grains are too coarse for the outlet, but finer ones sift through"
+    else:
+        reason = "only an arch formed by chance blocks the outlet, and any knock may break it"
+    return Judged(answer=answer, reason=reason, binding=held_by.name, mechanisms=found)
+
+
+def _why_lost(case: BedCase, weakest: Mechanism, chance: Mechanism, flow: Mechanism) -> tuple[Mechanism, str]:
+    """Return what loses a bed that nothing holds, and why in one sentence."""
+    if not case.material.free_flowing:
+        if weakest.name != _ARCH:
+            return weakest, "the arch would bear the load, but coarse grains rain from its lower face"
+        if (weakest.ratio or 0.0) >= 1.0:
+            return weakest, "the bed lands on its arch in each stroke, and the arch has too little in hand for that shock"
+        return weakest, "the outlet is wider than the powder can arch over"
+    if float(lasting_arch_outlet(diameter=case.material.d10)) > (case.setting.size or 0.0) > 0.0:
+        return chance, "each stroke unloads the grains' arch and breaks it" if _round(case) else (
+            "no size is known below which a slot stays blocked"
         )
-    if answer is Answer.MARGINAL and binding is supports[0]:
-        reason = "most grains are too coarse for the outlet, but finer ones sift through"
-    return Judged(answer=answer, reason=reason, binding=binding.name, mechanisms=(*supports, *figures))
+    return flow, "the grains flow freely through the outlet"
+
+
+def _why_doubtful(case: BedCase, weakest: Mechanism) -> str:
+    """Return why a cohesive arch is no better than marginal."""
+    if weakest.name == BELOW_ARCH and (weakest.ratio or 0.0) < 1.0:
+        return "the arch would bear the load, but pieces may break off below it"
+    if weakest.name == _ARCH and case.gamma > QUIET_GAMMA and case.material.strength_measured:
+        return "the arch would bear the load, but the bed may lift off and land on it in each stroke"
+    name = {_ARCH: "the cohesive arch"}.get(weakest.name, f"the {weakest.name}")
+    return case.shortfall(name, weakest.ratio or 0.0)
 
 
 def _round(case: BedCase) -> bool:
@@ -87,7 +110,7 @@ def _cohesive_arch(case: BedCase) -> Mechanism:
             answer = Answer.MARGINAL if ratio >= case.strength_margin else Answer.NOT_HELD
             remark = f"above Gamma {QUIET_GAMMA:g} the bed may lift and land on the arch; that shock is not covered"
     return Mechanism(
-        name="cohesive arch", answer=answer, value=size, bound=span, unit="m", ratio=ratio,
+        name=_ARCH, answer=answer, value=size, bound=span, unit="m", ratio=ratio,
         source="Jenike 1964, textbook form read; shaken: force balance", remark=remark,
     )  # fmt: skip
 

@@ -1,7 +1,8 @@
 """The verdict on a granular bed that is shaken vertically."""
 
+import math
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any, Final
 
 from containment.constants import STANDARD_ATMOSPHERE, STANDARD_GRAVITY
@@ -15,6 +16,7 @@ from containment.given.vessel import Vessel
 from containment.given.waveforms import PURE_SINE
 from containment.judgement.bed_behaviour import BedBehaviour, bed_behaviour
 from containment.judgement.bed_case import BED_MARGIN, BedCase, Judged, Mechanism
+from containment.judgement.bed_face import BELOW_ARCH
 from containment.judgement.bed_hanging import judge_open_bottom, judge_pocket
 from containment.judgement.bed_notes import bed_assumptions, bed_cautions
 from containment.judgement.bed_outlet import judge_outlet
@@ -33,7 +35,9 @@ _JUDGES: Final[dict[str, Callable[[BedCase], Judged]]] = {
     "pocket": judge_pocket,
 }
 _LARGEST_GAMMA: Final = 1e3
+_FINEST_GAMMA: Final = 1e-9
 _ALLOWED_DROP_OF_DEPTH: Final = 0.1
+_OPENINGS: Final = (1e-6, 1e3)
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -234,7 +238,7 @@ def assess_bed(
         holding_time=judged.holding_time,
         largest_gamma=_change_of_answer(case, judge, lambda a: a is Answer.HELD)[0],
         flow_gamma=_first_flow(case, judge),
-        largest_outlet=_largest_outlet(case, judged),
+        largest_outlet=_largest_outlet(case, judge, judged),
         limits=tuple(limits),
         cautions=bed_cautions(case, answer, acceleration=acceleration, moisture=damp),
         assumptions=bed_assumptions(case, moisture=damp),
@@ -271,7 +275,7 @@ def _change_of_answer(
         low, high = high, 2.0 * high
         if high > _LARGEST_GAMMA:
             return None, None
-    while high - low > 1e-7 * high:
+    while high - low > max(1e-7 * high, _FINEST_GAMMA):
         middle = 0.5 * (low + high)
         if good(judge(case.at(middle)).answer):
             low = middle
@@ -286,19 +290,25 @@ def _first_flow(case: BedCase, judge: Callable[[BedCase], Judged]) -> float | No
     return _change_of_answer(case, judge, lambda a: a is not Answer.NOT_HELD)[1]
 
 
-def _largest_outlet(case: BedCase, judged: Judged) -> float | None:
+def _largest_outlet(case: BedCase, judge: Callable[[BedCase], Judged], judged: Judged) -> float | None:
     """Return the largest opening that is held at the case's level of shaking, m."""
-    named = {m.name: m for m in judged.mechanisms}
     if case.setting.kind in ("outlet", "slot_outlet"):
-        arch, coarse = named["cohesive arch"], named["grains too coarse for the outlet"]
-        sizes = [0.0]
-        if case.gamma <= QUIET_GAMMA and not case.material.free_flowing and case.material.strength_measured:
-            sizes.append((arch.bound or 0.0) / case.strength_margin)
-        if case.material.one_size:
-            sizes.append((coarse.bound or 0.0) / case.margin)
-        return max(sizes) or None
-    if case.setting.kind == "open_bottom" and case.vessel.narrowest is not None:
-        plug, face = named["plug on the wall"], named["lower face of the bed"]
-        if face.answer is Answer.HELD and plug.ratio is not None and not case.material.free_flowing:
-            return (case.vessel.narrowest * plug.ratio / case.strength_margin) or None
+
+        def held(size: float) -> bool:
+            return judge(replace(case, setting=replace(case.setting, size=size))).answer is Answer.HELD
+
+        low, high = _OPENINGS
+        if not held(low):
+            return None
+        while high > low * (1.0 + 1e-9):
+            middle = (low * high) ** 0.5
+            low, high = (middle, high) if held(middle) else (low, middle)
+        return low
+    if case.setting.kind == "open_bottom" and case.vessel.narrowest is not None and case.gamma <= QUIET_GAMMA:
+        named = {m.name: m for m in judged.mechanisms}
+        plug, face, below = named["plug on the wall"], named["lower face of the bed"], named[BELOW_ARCH]
+        if face.answer is Answer.HELD and plug.ratio and not case.material.free_flowing:
+            # both grow with the width of the tube
+            ratio = min(plug.ratio / case.strength_margin, math.inf if below.ratio is None else below.ratio)
+            return case.vessel.narrowest * ratio
     return None

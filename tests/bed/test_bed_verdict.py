@@ -58,7 +58,15 @@ def rank(verdict):
         (powder(), at(5.0), dict(outlet=0.03), "not held", "cohesive arch"),
         (powder(), None, dict(outlet=0.06), "held", "cohesive arch"),
         (powder(100.0), None, dict(outlet=0.06), "not held", "cohesive arch"),
-        (powder(2000.0), at(2.0), dict(open_bottom=True), "held", "plug on the wall"),
+        (powder(2000.0), at(0.7), dict(open_bottom=True), "held", "plug on the wall"),
+        # far above the load, yet the friction lives on the thrust of an arch that each stroke unloads
+        (powder(20000.0), at(2.0), dict(open_bottom=True), "marginal", "plug on the wall"),
+        # rough wall, flat locus: the plug has a factor of 2.2, the lens below its arch has not enough tension
+        (powder(450.0, wall_friction=1.0), None, dict(open_bottom=True), "marginal", "powder below the arch"),
+        # the arch has a factor of 2.1, the lens below it hangs from too little; with room for both it is held
+        (powder(400.0), None, dict(outlet=0.06), "marginal", "powder below the arch"),
+        # the fines arch at once, the coarse grains that fit through the outlet are too heavy for their contacts
+        (powder(800.0, d90=2e-3), None, dict(outlet=0.02), "not held", "lower face of the bed"),
         (powder(300.0), at(1.0), dict(open_bottom=True), "not held", "plug on the wall"),
         (powder(2000.0, d90=1e-3), None, dict(open_bottom=True), "not held", "lower face of the bed"),
     ],
