@@ -76,7 +76,8 @@ def _window(page: ReportPage, case: Case, verdict: Verdict, *, drawn: bool) -> N
         from containment.faces.picture_window import draw_window, window_words
 
         words = window_words(view, title)
-        page.picture(inline_svg(draw_window(view, title), name="window", text=words), "Holding window: where shaking holds the layer, over frequency.")
+        caption = "Holding window: where shaking holds the layer, over frequency."
+        page.picture(inline_svg(draw_window(view, title), name="window", text=words), caption)
         return
     page.heading("Holding window")
     page.text(title)
