@@ -22,7 +22,7 @@ from containment.physics.edges import AMPLITUDE_BOUND, Edges, first_roots, hold_
 from containment.physics.floquet import static_growth_rate
 from containment.physics.layers import LayerModel, layer_model
 
-__all__ = ["Allowance", "Case", "Unshaken", "allowance", "spectrum_of"]
+__all__ = ["Allowance", "Case", "Unshaken", "allowance", "cushion_state", "spectrum_of"]
 
 Real = npt.NDArray[np.float64]
 
@@ -97,6 +97,19 @@ def spectrum_of(vessel: Vessel) -> wavenumbers.Spectrum:
         case Slot():
             return wavenumbers.slot(vessel.width)
     return wavenumbers.unbounded()
+
+
+def cushion_state(liquid: Liquid, vessel: Vessel, around: Surroundings) -> dict[str, float]:
+    """Return the trapped gas under the layer's weight: its pressure (Pa) and height (m), and the resonance on it (Hz)."""
+    from containment.physics.gas_cushion import compressed_gap, cushion_pressure, cushion_resonance
+
+    load = {"ambient_pressure": around.ambient_pressure, "density": liquid.density, "depth": vessel.depth}
+    pressure = float(cushion_pressure(**load))
+    gap = float(compressed_gap(around.cushion, **load))
+    resonance = cushion_resonance(
+        pressure=pressure, density=liquid.density, depth=vessel.depth, gap=gap, exponent=around.polytropic_exponent
+    )
+    return {"pressure_Pa": pressure, "height_m": gap, "resonance_Hz": float(resonance)}
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -260,13 +273,9 @@ class Case:
         around = self.surroundings
         if around.cushion is None:
             return np.ones(f.shape), np.ones(f.shape)
-        from containment.physics.gas_cushion import compressed_gap, cushion_pressure, cushion_resonance, motion_ratio
+        from containment.physics.gas_cushion import motion_ratio
 
-        load = {"ambient_pressure": around.ambient_pressure, "density": self.liquid.density, "depth": self.vessel.depth}
-        resonance = cushion_resonance(
-            pressure=cushion_pressure(**load), density=self.liquid.density, depth=self.vessel.depth,
-            gap=compressed_gap(around.cushion, **load), exponent=around.polytropic_exponent,
-        )  # fmt: skip
+        resonance = cushion_state(self.liquid, self.vessel, around)["resonance_Hz"]
         low = motion_ratio(f, resonance=resonance, damping_ratio=_CUSHION_DAMPING)
         high = motion_ratio(f, resonance=resonance)
         return np.minimum(low, high), np.minimum(np.maximum(low, high), 1e6)

@@ -7,7 +7,7 @@ import numpy as np
 from containment.constants import STANDARD_GRAVITY
 from containment.given.drive import DriveLimits
 from containment.given.waveforms import PURE_SINE
-from containment.judgement.case import Case
+from containment.judgement.case import Case, cushion_state
 from containment.judgement.cautions import machine_cautions, product_cautions, trial_cautions
 from containment.judgement.companions import gas_caution
 from containment.judgement.findings import Caution, seconds_text
@@ -84,6 +84,11 @@ def assumptions(case: Case, drive: DriveLimits) -> tuple[str, ...]:
             "every wavelength counts"
         )
     if case.surroundings.cushion is not None:
+        gas = cushion_state(case.liquid, case.vessel, case.surroundings)
+        lines.append(
+            f"trapped gas {1e3 * gas['height_m']:.3g} mm high under its weight, resonance {gas['resonance_Hz']:.3g} Hz; "
+            "accelerations are the vessel's, the layer moves more below resonance and less above"
+        )
         lines.append(
             "layer floating on trapped gas: a spring without leak; both surfaces are taken as if the other side were a rigid "
             "base, good for wavelengths below about three depths; near resonance take the edges as estimates"

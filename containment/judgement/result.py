@@ -8,7 +8,7 @@ from containment.given.drive import DriveLimits
 from containment.given.liquid import Liquid
 from containment.given.surroundings import Surroundings
 from containment.given.vessel import Vessel
-from containment.judgement.case import Allowance, Unshaken
+from containment.judgement.case import Allowance, Unshaken, cushion_state
 from containment.judgement.findings import Answer, Caution, Limit
 from containment.judgement.operating_point import OperatingPoint
 from containment.judgement.ranges import DriveChoice, HeldOver
@@ -89,6 +89,11 @@ class Verdict:
             "liquid": self.liquid.to_dict(),
             "vessel": self.vessel.to_dict(),
             "surroundings": self.surroundings.to_dict(),
+            "trapped_gas": (
+                cushion_state(self.liquid, self.vessel, self.surroundings)
+                if self.surroundings.cushion is not None
+                else None
+            ),
             "dwell_s": self.allowance.dwell,
             "allowed_growth_1_s": self.allowance.growth,
             "unevenness_m": self.allowance.unevenness,
