@@ -1,0 +1,195 @@
+"""Edges of the window at many drive points, and beside them those that `assess` looks at when it doubts.
+
+That is: with the drag of the walls, under a skin, at the corners of the stated uncertainty, and of the modes that tilt.
+"""
+
+import dataclasses
+import math
+from collections.abc import Iterator, Sequence
+from dataclasses import dataclass
+
+import numpy as np
+import numpy.typing as npt
+
+from containment.errors import ContainmentError
+from containment.given.liquid import Liquid
+from containment.judgement.case import Case
+from containment.judgement.companions import dragged_layer, tilt_modes
+from containment.physics.edges import Edges, first_roots
+from containment.physics.layers import LayerModel
+
+__all__ = ["EdgeValues", "edges_in_parts", "edges_of_case"]
+
+Real = npt.NDArray[np.float64]
+Flags = npt.NDArray[np.bool_]
+
+
+@dataclass(frozen=True, slots=True)
+class EdgeValues:
+    """Edges at points; arrays of one value a point, m/s^2.
+
+    Attributes
+    ----------
+    lower, upper : array
+        See `Edges`.
+    dragged : array
+        Lower edge with the drag of the side walls; not-a-number where it is not modelled.
+    covered_lower, covered_upper : array
+        If a skin covers the surface; not-a-number where somebody has said what covers it.
+    corners : sequence of (lower, upper)
+        At the corners of the stated uncertainty of the properties.
+    tilt : tuple or None
+        Of a vessel that is tilted: angle (rad), depth (m), heights (m) and falling stiffness over density (m/s^2) of its
+        modes, lower edges of these modes (points, modes), and where no mean position exists.
+    """
+
+    lower: Real
+    upper: Real
+    dragged: Real
+    covered_lower: Real
+    covered_upper: Real
+    corners: Sequence[tuple[Real, Real]] = ()
+    tilt: "TiltedModes | None" = None
+
+    def take(self, at: npt.NDArray[np.intp]) -> "EdgeValues":
+        """Return the values at chosen points."""
+        return EdgeValues(
+            self.lower[at], self.upper[at], self.dragged[at], self.covered_lower[at], self.covered_upper[at],
+            [(low[at], high[at]) for low, high in self.corners],
+            None if self.tilt is None else dataclasses.replace(self.tilt, lower=self.tilt.lower[at]),
+        )  # fmt: skip
+
+    def spans(self, acceleration: Real) -> Flags:
+        """Return which points leave the window at some corner of the uncertainty."""
+        found = np.zeros(len(acceleration), dtype=bool)
+        for low, high in self.corners:
+            found |= ~((low < acceleration) & (acceleration < high))
+        return found
+
+    def tilted_too_far(self, acceleration: Real) -> Flags:
+        """Return which points the tilt of the vessel brings to a tenth of the depth or more."""
+        if self.tilt is None:
+            return np.zeros(len(acceleration), dtype=bool)
+        return self.tilt.too_far(acceleration) & (self.lower > 0.0)
+
+
+@dataclass(frozen=True, slots=True)
+class TiltedModes:
+    """Modes that a tilt moves: see `containment.physics.tilt`."""
+
+    angle: float
+    depth: float
+    case: Case
+    wavenumber: Real
+    height: Real
+    lower: Real
+
+    def too_far(self, acceleration: Real) -> Flags:
+        """Return where the mean surface moves a tenth of the depth; where a mode falls slowly there is no mean surface."""
+        from containment.physics import tilt
+
+        liquid = self.case.liquid
+        stiffness = tilt.mean_stiffness(
+            self.wavenumber, acceleration[:, None], self.lower, density=liquid.density, surface_tension=liquid.surface_tension
+        )
+        bound = tilt.largest_tilt(self.height, stiffness, freeboard=0.1 * self.depth)
+        unknown = np.any((self.case.layer.stiffness(self.wavenumber) < 0.0) & (self.lower == 0.0), axis=1)
+        result: Flags = ~unknown & ~(self.angle < bound)
+        return result
+
+
+def edges_of_case(case: Case, frequency: Real) -> EdgeValues:
+    """Return the edges of one layer at points of given frequencies, each frequency solved once.
+
+    Raises
+    ------
+    NotComputableError
+        See `containment.physics.edges.hold_edges`.
+    """
+    f, at = np.unique(frequency, return_inverse=True)
+    edges = case.edges(f)
+    none = np.full(len(f), np.nan)
+    drag_layer = dragged_layer(case)
+    dragged = none if drag_layer is None else _lower_edges(case, f, drag_layer)
+    covered = Edges(f, none, none, none, none, none) if asks_for_skin(case) is False else case.edges(
+        f, layer=case.layer_with(surface="covered")
+    )  # fmt: skip
+    corners = [
+        (found.lower, found.upper) for corner in corner_cases(case) for found in [corner.edges(f)]
+    ]
+    tilt = None
+    if case.surroundings.tilt:
+        waves, heights = tilt_modes(case)
+        if len(waves):
+            lowers = np.stack([case.lower_roots(float(x), waves) for x in f])
+            tilt = TiltedModes(case.surroundings.tilt, case.vessel.depth, case, waves, heights, lowers)
+    return EdgeValues(edges.lower, edges.upper, dragged, covered.lower, covered.upper, corners, tilt).take(at)
+
+
+def edges_in_parts(
+    cases: Sequence[Case], which: npt.NDArray[np.intp], frequency: Real
+) -> Iterator[tuple[npt.NDArray[np.intp], "EdgeValues | Exception"]]:
+    """Yield the points of layers, in parts, with their edges or with what kept these from being computed.
+
+    Parameters
+    ----------
+    cases : sequence of Case
+        Layers that share vessel, surroundings and allowance.
+    which : array of int, shape (points,)
+        The layer of each point.
+    frequency : array, shape (points,)
+        Hz.
+    """
+    for i in range(len(cases)):
+        mine = np.flatnonzero(which == i)
+        if not len(mine):
+            continue
+        try:
+            yield mine, edges_of_case(cases[i], frequency[mine])
+        except (ContainmentError, ArithmeticError, ValueError):  # one frequency spoils the others: each for itself
+            for f in np.unique(frequency[mine]):
+                at = mine[frequency[mine] == f]
+                try:
+                    yield at, edges_of_case(cases[i], frequency[at])
+                except (ContainmentError, ArithmeticError, ValueError) as error:
+                    yield at, error
+
+
+def asks_for_skin(case: Case) -> bool:
+    """Return whether nobody has said what covers the surface, so that a skin has to be considered."""
+    around = case.surroundings
+    return around.surface is None and around.film_modulus is None and around.below is None and case.liquid.rheology is None
+
+
+def corner_cases(case: Case) -> list[Case]:
+    """Return the case at the corners of the stated uncertainty of its liquid's properties, as `assess` takes them."""
+    spread = case.liquid.uncertainty
+    names = [name for name in ("viscosity", "surface_tension", "density") if spread.get(name, 0.0) > 0.0]
+    if not names:
+        return []
+    corners: list[dict[str, float]] = [{}]
+    for name in names[:2] if spread.get("density", 0.0) < 0.02 else names:
+        value = getattr(case.liquid, name)
+        corners = [{**c, name: value * (1.0 + sign * min(spread[name], 0.9))} for c in corners for sign in (-1, 1)]
+    plain = {name: getattr(case.liquid, name) for name in ("density", "viscosity", "surface_tension")}
+    return [dataclasses.replace(case, liquid=Liquid(**{**plain, **corner})) for corner in corners]
+
+
+def _lower_edges(case: Case, f: Real, layer: LayerModel) -> Real:
+    """Return the lower edge of another layer at many frequencies, as `Case.lower_edge` has it for one."""
+    top = case.capillary_wavenumber
+    k = case.spectrum.discrete
+    k = k[k < top]
+    start = case.spectrum.continuous_from
+    if start < top:
+        k = np.concatenate([k, np.geomspace(start, top, 100)])
+    growth = case.allowance.growth
+    k = k[layer.coefficient(growth, k).real < 0.0]
+    if not len(k):
+        return np.zeros(len(f))
+    w = np.repeat(2.0 * math.pi * f, len(k))
+    roots = first_roots(
+        layer, np.tile(k, len(f)), w, growth, case.amplitude_bound * w * w, subharmonic=False
+    )
+    result: Real = roots.reshape(len(f), -1).max(axis=1)
+    return result
