@@ -9,6 +9,7 @@ _PUBLIC: Final = {
     "NotComputableError": "containment.errors",
     "ContainmentError": "containment.errors",
     "Grains": "containment.given.grains",
+    "grain": "containment.given.grains",
     "grains": "containment.given.grains",
     "BedVerdict": "containment.judgement.bed_verdict",
     "assess_bed": "containment.judgement.bed_verdict",
@@ -35,7 +36,7 @@ __all__ = sorted(_PUBLIC)
 if TYPE_CHECKING:
     from containment.errors import ContainmentError, InputError, NotComputableError
     from containment.given.drive import DriveLimits
-    from containment.given.grains import Grains, grains
+    from containment.given.grains import Grains, grain, grains
     from containment.given.liquid import Liquid, liquid
     from containment.given.motion import Motion, waveform
     from containment.given.slurry import slurry

@@ -123,7 +123,8 @@ def _reach(screen: Screen, verdict: BedVerdict) -> None:
     if verdict.flow_gamma == 0.0:
         rows.append(("lost from", "at rest already: no shaking is needed to make it flow"))
     elif verdict.flow_gamma is not None:
-        rows.append(("lost from", f"{verdict.flow_gamma:.3g} g_n{at}: the least drive that is expected to make it flow"))
+        why = "it passes the rim" if case.setting.kind == "freeboard" else "nothing is known to hold it; try whether it flows"
+        rows.append(("lost from", f"{verdict.flow_gamma:.3g} g_n{at}: from there {why}"))
     else:
         rows.append(("lost from", "not known" if case.frequency is None else "not up to 1000 g_n"))
     if verdict.largest_outlet is not None:

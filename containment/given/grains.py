@@ -9,7 +9,7 @@ from typing import Any, Final
 from containment.errors import InputError
 from containment.given.quantities import si_value
 
-__all__ = ["Grains", "grains"]
+__all__ = ["Grains", "grain", "grains"]
 
 _BOUNDS: Final = {
     # property: (kind, least, most), SI; far outside what is handled
@@ -94,6 +94,8 @@ class Grains:
         if self.particle_density is None:
             object.__setattr__(self, "particle_density", self.bulk_density / _SPHERES_PACKED)
             assumed.append("particle density not given: bulk density over 0.6 taken")
+        if self.d10 is None and self.d90 is None:
+            assumed.append("one grain diameter given: all grains are taken as that size, none finer and none coarser")
         for name in ("d10", "d90"):
             if getattr(self, name) is None:
                 object.__setattr__(self, name, self.d50)
@@ -249,3 +251,7 @@ def _named(mapping: Mapping[str, Any], name: str, otherwise: Any) -> Any:
 def _hazard(text: str) -> tuple[str, str]:
     topic, colon, sentence = text.partition(": ")
     return (topic, sentence[:1].upper() + sentence[1:]) if colon else ("material", text)
+
+
+grain = grains
+"""The same: one grain material."""

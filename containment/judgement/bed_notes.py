@@ -32,12 +32,20 @@ def bed_cautions(
                 "the opening mechanically for any work there, put a catch tray under it.",
             )
         )
+    if case.setting.kind == "freeboard" and answer is not Answer.HELD:
+        found.append(
+            Caution(
+                topic="thrown product",
+                text="Grains may fly over the rim: cover the vessel, shield eyes, keep what they could fall into closed.",
+            )
+        )
     if not material.free_flowing and (hanging or answer is not Answer.NOT_HELD):
         found.append(
             Caution(
                 topic="measure the cohesion",
                 text="The verdict stands on a strength that moisture, drying, charge, time and consolidation change several "
-                "times over: measure it on the lot in hand (shear cell), not in a table.",
+                "times over: measure it on the lot in hand (shear cell), not in a table"
+                + (", and under vibration, which weakens powders." if acceleration is not None else "."),
             )
         )
     found += product_cautions(material.hazards, temperature=None)
@@ -93,19 +101,23 @@ def bed_assumptions(case: BedCase, *, moisture: float | None = None) -> tuple[st
     """Return what the verdict takes for granted."""
     material, kind = case.material, case.setting.kind
     lines = ["vertical sine, rigid vessel, no tilt, no knocks, no gas blown in or out"]
+    if case.frequency is not None:
+        lines.append("steady drive: run-up and run-down pass other frequencies and are not covered")
     lines += material.assumed
     if kind == "freeboard":
         lines.append(
             "the bed flies as one inelastic body without gas or wall friction, both of which lower the throw; level fill; "
             f"nothing leaves the base up to Gamma {QUIET_GAMMA:g}"
         )
+        source = "as given" if case.restitution is not None else "assumed for a bed of this depth in grains"
+        lines.append(f"restitution of a grain on the surface: {case.grain_restitution:g}, {source}")
         lines.append("grains that others strike in flight are not covered")
     if kind in ("outlet", "slot_outlet"):
         lines.append("flat bottom (the weakest arch); the outlet is round or a slot with sharp edges, open to the air")
         lines.append("an arch of grains without cohesion is never counted as holding")
     if kind in ("open_bottom", "pocket"):
         lines.append("what holds is the strength of the powder and the friction of the wall; no lid, no cloth, no grid below")
-        lines.append("the plug is whole, from wall to wall, without cracks")
+        lines.append("the plug is whole, from wall to wall, without cracks; its lower face is flat")
     if kind == "pocket":
         lines.append(
             f"gas-tight above the bed, air at 20 degC, {1e-3 * case.ambient_pressure:.4g} kPa; no channels; the bed may sink "
@@ -113,6 +125,8 @@ def bed_assumptions(case: BedCase, *, moisture: float | None = None) -> tuple[st
         )
     if not material.free_flowing:
         spread = case.strength_margin
+        if case.gamma > 0.0:
+            lines.append("strength as at rest, though vibration is known to weaken powders (common practice)")
         lines.append(f"strengths of powders scatter: a factor of {spread:.3g} is asked for")
         lines.append("the yield strength is that of the powder near the opening, where little weighs on it")
         lines.append("tensile strength from the yield strength by a straight yield locus at the angle of repose, "
