@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from containment.physics.bed.throw import bed_rise, grain_rise_bound, heap_rise, surface_throw
-from tests.independent.bouncing_bed import grain_bounces
+from tests.independent.bouncing_bed import grain_bounces, grain_over_vessel
 
 G = 9.80665
 
@@ -28,6 +28,22 @@ def test_no_simulated_grain_passes_the_bound(restitution, gamma):
         assert all(b.speed_after <= most * (1 + 1e-9) for b in bounces[1:])
         seen = max([seen, *(b.height_over_base for b in bounces[1:])])
     assert seen <= bound * (1 + 1e-9)
+
+
+@pytest.mark.parametrize("restitution", [0.0, 0.3, 0.7])
+@pytest.mark.parametrize("gamma", [1.5, 3.0, 3.6, 5.0, 8.0])
+def test_no_grain_on_a_flying_bed_passes_the_bound(restitution, gamma):
+    w = 2 * math.pi * 30.0
+    amplitude = gamma * G / w**2
+    bound = float(grain_rise_bound(velocity=amplitude * w, amplitude=amplitude, restitution=restitution, gravity=G))
+    rise = bed_rise(acceleration=gamma * G, angular_frequency=w, gravity=G)
+    seen = [
+        grain_over_vessel(amplitude, 30.0, restitution, gravity=G, drop=share * bound, periods=40, steps=1000)
+        for share in (0.05, 0.4, 0.95)
+    ]
+    assert 0.9 * rise < max(seen) <= bound
+    if restitution == 0.0:  # the grain stays with the bed, whose own throw is the bound then
+        assert max(seen) == pytest.approx(rise, rel=0.03)
 
 
 def test_scaling():

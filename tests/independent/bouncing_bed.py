@@ -98,3 +98,33 @@ def grain_bounces(amplitude, frequency, restitution, *, gravity, drop, bounces, 
         if v - base.velocity(t) < 1e-3 * abs(base.omega * amplitude):
             break  # it has come to rest on the base
     return found
+
+
+def grain_over_vessel(amplitude, frequency, restitution, *, gravity, drop, periods, steps=4000):
+    """Return how high a grain that bounces on a flying inelastic bed comes over the bed's place at rest in its vessel.
+
+    The surface is that of the bed, on its base or in flight; time steps of one `steps`-th of a period. The fall from `drop`
+    itself does not count.
+    """
+    base, step = Base(amplitude, frequency), 1.0 / (frequency * steps)
+    surface, speed, riding = base.position(0.0), base.velocity(0.0), True
+    x, v, thrown, highest = surface + drop, 0.0, False, 0.0
+    for i in range(1, int(periods * steps)):
+        t = i * step
+        if riding and base.acceleration(t) <= -gravity:
+            riding = False  # thrown with the base's speed
+        if riding:
+            surface, speed = base.position(t), base.velocity(t)
+        else:
+            surface, speed = surface + speed * step - 0.5 * gravity * step * step, speed - gravity * step
+            if surface <= base.position(t) and speed < base.velocity(t):
+                surface, speed, riding = base.position(t), base.velocity(t), True
+        x, v = x + v * step - 0.5 * gravity * step * step, v - gravity * step
+        if x <= surface:
+            thrown = True
+            x = surface
+            if v < speed:
+                v = speed + restitution * (speed - v)
+        if thrown:
+            highest = max(highest, x - base.position(t))
+    return highest
