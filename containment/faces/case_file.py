@@ -66,8 +66,8 @@ _LISTS: Final = ("table",)
 def add_case(parser: argparse.ArgumentParser) -> None:
     """Add the options of case files."""
     group = parser.add_argument_group("case file (TOML)")
-    group.add_argument("--case", metavar="FILE", help="read the case; options given here take the place of its own")
-    group.add_argument("--save-case", metavar="FILE", help="write the case, to be kept and run again")
+    group.add_argument("--case", metavar="FILE", help="read the case; options given here prevail")
+    group.add_argument("--save-case", metavar="FILE", help="write the case, to be run again")
 
 
 def _sections(options: argparse.Namespace) -> dict[str, tuple[str, ...]]:

@@ -9,7 +9,7 @@ import numpy.typing as npt
 from containment.faces.chart_axes import LogAxis
 from containment.faces.window_view import WindowView
 
-__all__ = ["CORNER_SIGNS", "POINT_SIGN", "window_chart", "window_signs"]
+__all__ = ["CORNER_SIGNS", "POINT_SIGN", "held_words", "marginal_words", "window_chart", "window_signs"]
 
 CORNER_SIGNS: Final = "123"
 POINT_SIGN: Final = "@"
@@ -68,9 +68,8 @@ def window_signs(view: WindowView) -> list[tuple[str, str]]:
     if held.any():
         low, high = view.safe
         if np.any(low < high):
-            signs.append((_HELD, f"held, a factor of {view.margin_factor:g} or more from every edge"))
-        signs.append((_INSIDE, "inside the edges, but closer than that: marginal" if np.any(low < high) else
-                      f"inside the edges, but nowhere by a factor of {view.margin_factor:g}: marginal"))  # fmt: skip
+            signs.append((_HELD, held_words(view)))
+        signs.append((_INSIDE, marginal_words(view)))
     if np.any(np.isfinite(view.lower) & (view.lower > 0.0)):
         signs.append((_LOWER, "falls below this edge"))
     if np.isfinite(view.upper).any():
@@ -83,6 +82,24 @@ def window_signs(view: WindowView) -> list[tuple[str, str]]:
         cut = bool(np.any(held & (ceiling == view.searched)))
         signs.append((_SEARCHED, "end of the search: 60 mm amplitude" + (", nothing is claimed above" if cut else "")))
     return signs
+
+
+def held_words(view: WindowView) -> str:
+    """Return what the sign or shade of the held area means."""
+    parts = (("drag of the walls", view.dragged), ("a skin", view.covered))
+    counted = [name for name, part in parts if part is not None]
+    also = f", {' and '.join(counted)} counted" if counted else ""
+    return f"held: a factor of {view.margin_factor:g} or more from every edge{also}"
+
+
+def marginal_words(view: WindowView) -> str:
+    """Return what the sign or shade of the rest between the edges means."""
+    if view.doubtful:
+        return "between the edges, but marginal at best: see the verdict"
+    low, high = view.safe
+    return "between the edges, but closer than that: marginal" if np.any(low < high) else (
+        f"between the edges, but nowhere by a factor of {view.margin_factor:g}: marginal"
+    )
 
 
 def _inside(view: WindowView, curve: Real) -> bool:

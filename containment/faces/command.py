@@ -8,6 +8,7 @@ from collections.abc import Sequence
 from typing import Final, NoReturn
 
 from containment.errors import ContainmentError, NotComputableError
+from containment.faces.help_texts import HelpFormatter, epilog, usage
 
 __all__ = ["main"]
 
@@ -21,8 +22,6 @@ SUBCOMMANDS: Final = {
 }
 
 _MAY_REPEAT: Final = ("--table",)
-
-_EXITS: Final = "exit status: 0 held, 1 not held, 2 bad input, 3 marginal or not proven, 4 internal failure"
 
 
 class _Parser(argparse.ArgumentParser):
@@ -41,16 +40,17 @@ def main(arguments: Sequence[str] | None = None) -> int:
     parser = _Parser(
         prog="containment",
         description="Does the liquid, or the bed, stay in the vessel while it is shaken?",
-        epilog=_EXITS,
-        formatter_class=argparse.RawDescriptionHelpFormatter,
+        epilog=epilog(""),
+        formatter_class=HelpFormatter,
     )
     parser.add_argument("--version", action="version", version=_version(chosen))
     commands = parser.add_subparsers(dest="command", metavar="COMMAND", required=True)
     for name, (module, line) in SUBCOMMANDS.items():
         sub = commands.add_parser(
-            name, help=line, description=line, epilog=_EXITS, formatter_class=argparse.RawDescriptionHelpFormatter,
-            allow_abbrev=False,
+            name, help=line, description=line, usage=usage(name), epilog=epilog(name), formatter_class=HelpFormatter,
+            allow_abbrev=False, add_help=False,
         )
+        sub.add_argument("-h", "--help", action="help", help=argparse.SUPPRESS)
         if name == chosen:  # only the chosen sub-command's module is imported
             importlib.import_module(module).add_arguments(sub)
     arguments = _with_negative_values_joined(arguments)

@@ -26,19 +26,19 @@ NAMES: Final = "a liquid of the property table, or custom"
 
 def add_liquid(parser: argparse.ArgumentParser) -> None:
     """Add the options of the liquid."""
-    parser.add_argument("name", metavar="NAME", nargs="?", help=NAMES)
     group = parser.add_argument_group("liquid")
+    group.add_argument("name", metavar="NAME", nargs="?", help=NAMES)
     group.add_argument("--temperature", metavar="T", help="default 20degC")
     group.add_argument("--density", metavar="RHO", help="in place of the table's, such as 1261kg/m**3")
-    group.add_argument("--viscosity", metavar="MU", help="dynamic, in place of the table's, such as 1.41Pa*s")
-    group.add_argument("--surface-tension", metavar="GAMMA", help="in place of the table's, such as 63mN/m")
+    group.add_argument("--viscosity", metavar="MU", help="dynamic, likewise, such as 1.41Pa*s")
+    group.add_argument("--surface-tension", metavar="GAMMA", help="likewise, such as 63mN/m")
     group.add_argument(
         "--rheology",
         metavar="MODEL:...",
-        help="not Newtonian, such as jeffreys:viscosity=10Pa*s,relaxation=10ms,retardation=2ms",
+        help="such as maxwell:viscosity=8Pa*s,relaxation=9ms",
     )
     group.add_argument("--table", metavar="FILE", action="append", help="a table of your own; may be repeated")
-    group.add_argument("--solids", metavar="FRACTION", help="solids suspended in it, by volume, such as 0.35")
+    group.add_argument("--solids", metavar="FRACTION", help="solids suspended in it by volume, such as 0.35")
     group.add_argument("--max-packing", metavar="FRACTION", help="of these solids at their closest, such as 0.64")
     group.add_argument("--particle-density", metavar="RHO", help="of the solids; default that of the liquid")
 
@@ -46,10 +46,10 @@ def add_liquid(parser: argparse.ArgumentParser) -> None:
 def add_process(parser: argparse.ArgumentParser) -> None:
     """Add what the process asks for."""
     group = parser.add_argument_group("process")
-    group.add_argument("--dwell", metavar="TIME", help="how long it stays upside-down; default for ever")
-    group.add_argument("--unevenness", metavar="X", help="of the surface at the start; default 0.1mm or depth/100")
+    group.add_argument("--dwell", metavar="TIME", help="how long it is upside-down; default for ever")
+    group.add_argument("--unevenness", metavar="X", help="of the surface at first; 0.1mm or depth/100")
     group.add_argument("--amplification", metavar="B", help="factor by which it may grow in the dwell")
-    group.add_argument("--margin", metavar="FACTOR", help="factor to either edge below which it is marginal; 1.25")
+    group.add_argument("--margin", metavar="FACTOR", help="to either edge, below which it is marginal; 1.25")
 
 
 def add_surroundings(parser: argparse.ArgumentParser) -> None:
@@ -57,11 +57,11 @@ def add_surroundings(parser: argparse.ArgumentParser) -> None:
     group = parser.add_argument_group("surroundings")
     group.add_argument("--surface", choices=("clean", "covered"), help="free surface clean, or under a skin")
     group.add_argument("--film-modulus", metavar="E", help="of a surface film in between, such as 20mN/m")
-    group.add_argument("--cushion", metavar="GAP", help="height of trapped gas on which the layer floats")
+    group.add_argument("--cushion", metavar="GAP", help="height of trapped gas that the layer floats on")
     group.add_argument("--polytropic-exponent", metavar="N", help="of that gas; default 1.4")
     group.add_argument("--below", metavar="NAME", help="a lighter liquid under the layer, down to a lid")
     group.add_argument("--below-depth", metavar="DEPTH", help="its depth")
-    group.add_argument("--interfacial-tension", metavar="GAMMA", help="between the two liquids")
+    group.add_argument("--interfacial-tension", metavar="T", help="between the two liquids")
     group.add_argument("--tilt", metavar="ANGLE", help="of the vessel, such as 1deg")
     group.add_argument("--ambient-pressure", metavar="P", help="absolute; default 101.325kPa")
 

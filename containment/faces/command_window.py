@@ -12,23 +12,16 @@ if TYPE_CHECKING:
 
 __all__ = ["add_arguments", "run"]
 
-EXAMPLES = """examples:
-  containment window glycerol --cylinder 70mm --depth 30mm
-  containment window glycerol --cylinder 70mm --depth 30mm --dwell 60s \\
-    --frequency 100Hz --acceleration 60g_n --chart window.svg
-  containment window "castor oil" --box 60mmx80mm --depth 20mm \\
-    --max-stroke 25mm --against stroke --rows > window.csv"""
-
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Add the sub-command's options."""
     command_liquid.add_case_arguments(parser)
     group = parser.add_argument_group("output")
-    group.add_argument("--against", choices=("acceleration", "stroke", "velocity"), default="acceleration",
-                       help="what is drawn or listed over frequency; default acceleration")  # fmt: skip
-    group.add_argument("--chart", metavar="FILE", help="draw it to FILE.svg, .png or .pdf (extra: plot)")
+    group.add_argument("--against", choices=("acceleration", "stroke", "velocity"), metavar="SIZE",
+                       default="acceleration", help="acceleration (default), stroke or velocity")  # fmt: skip
+    group.add_argument("--chart", metavar="FILE", help="draw it to FILE.svg, .png or .pdf (extra plot)")
     group.add_argument("--rows", action="store_true", help="the numbers as CSV, SI units")
-    group.add_argument("--json", action="store_true", help="verdict and numbers as one JSON object, SI units")
+    group.add_argument("--json", action="store_true", help="verdict and numbers as one JSON object, SI")
     group.add_argument("--plain", action="store_true", help="no colour and no boxes")
     report_file.add_report(group)
     case_file.add_case(parser)

@@ -49,7 +49,7 @@ def add_vessel(parser: argparse.ArgumentParser, *, depth: str) -> None:
     group.add_argument("--unbounded", action="store_true", help="layer without side walls")
     group.add_argument("--depth", metavar="DEPTH", help=f"depth of the {depth}, such as 30mm")
     group.add_argument(
-        "--contact-line", choices=("sliding", "pinned"), help="of a liquid at the wall; pinned at a brimful rim"
+        "--contact-line", choices=("sliding", "pinned"), metavar="WHICH", help="sliding, or pinned at a brimful rim"
     )
 
 
@@ -61,8 +61,8 @@ def add_drive_point(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--amplitude", metavar="X", help="zero to peak: half the stroke, such as 2.5mm")
     group.add_argument("--stroke", metavar="X", help="peak to peak: twice the amplitude, such as 5mm")
     group.add_argument("--velocity", metavar="V", help="peak, such as 0.8m/s")
-    group.add_argument("--second-harmonic", metavar="RATIO[@PHASE]", help="of the acceleration, such as 0.2@90deg")
-    group.add_argument("--crank-ratio", metavar="R", help="crank radius over rod length of a crank drive")
+    group.add_argument("--second-harmonic", metavar="R@PHASE", help="of the acceleration, such as 0.2@90deg")
+    group.add_argument("--crank-ratio", metavar="R", help="crank radius over rod length, of a crank drive")
 
 
 def add_drive_limits(parser: argparse.ArgumentParser) -> None:

@@ -46,11 +46,18 @@ class Labels:
         view = self._view
         low, high = np.maximum(view.safe[0], view.lowest), np.minimum(view.safe[1], view.highest)
         best, place = 12.0, None
-        for i in np.flatnonzero(low < high)[::3]:
-            x, bottom = self._pixel(float(view.frequency[i]), float(low[i]))
-            top = self._pixel(float(view.frequency[i]), float(high[i]))[1]
+        open_ = low < high
+        floor = self._axes.transData.transform(np.column_stack([view.frequency, np.where(open_, low, view.highest)]))
+        roof = self._axes.transData.transform(np.column_stack([view.frequency, np.where(open_, high, view.lowest)]))
+        across, bottoms, tops = floor[:, 0], floor[:, 1], roof[:, 1]
+        for i in np.flatnonzero(open_)[::3]:
+            x, bottom, top = across[i], bottoms[i], tops[i]
+            under = [x - 24.0, x, x + 24.0]
+            low_there, high_there = np.interp(under, across, bottoms).max(), np.interp(under, across, tops).min()
             for share in (0.3, 0.5, 0.7):
                 y = bottom + share * (top - bottom)
+                if not low_there + 8.0 < y < high_there - 8.0:
+                    continue
                 clear = self._clearance([(x - 20.0, y), (x, y), (x + 20.0, y)])
                 room = min(top - y, y - bottom, 50.0) + min(clear, 40.0)
                 if room > best and clear > 14.0:
@@ -90,6 +97,9 @@ class Labels:
             if clear > _CLEAR:
                 break
         _, centre, covered = choices[-1] if choices[-1][0] > _CLEAR else max(choices)
+        if np.hypot(covered[4][0] - covered[0][0], covered[4][1] - covered[0][1]) < 1.5 * half:  # too ragged to follow
+            self._beside(at(centre), words, colour)
+            return
         self._taken += covered
         (x0, y0), (x1, y1) = covered[1], covered[3]
         self._write(

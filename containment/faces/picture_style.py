@@ -58,7 +58,7 @@ def entitle(axes: "Axes", title: str) -> None:
     import textwrap
 
     axes.set_title(
-        "\n".join(textwrap.wrap(title, 92)[:4]), loc="left", fontsize=9.5, fontweight="bold", parse_math=False, color=INK
+        "\n".join(textwrap.wrap(title, 78)[:4]), loc="left", fontsize=9.5, fontweight="bold", parse_math=False, color=INK
     )
 
 

@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Any
 import numpy as np
 import numpy.typing as npt
 
-from containment.faces.chart_window import CORNER_SIGNS
+from containment.faces.chart_window import CORNER_SIGNS, held_words, marginal_words
 from containment.faces.picture_labels import Labels
 from containment.faces.picture_style import COLOURS, INK, entitle, halo, new_picture, tidy_log_axis
 from containment.faces.screen import quantity_text
@@ -130,10 +130,11 @@ def _key(view: WindowView) -> list[str]:
     if view.point is not None:
         lines.append(f"X  drive point: {_size(view.point)}")
     if view.held.any():
-        shades = f"Dark shade: a factor of {view.margin_factor:g} or more from every edge. Pale shade: closer, marginal."
+        if np.any(view.safe[0] < view.safe[1]):
+            lines.append(f"Dark shade: {held_words(view)}.")
         skin = view.covered
-        lost = skin is not None and bool(np.any(view.held & ((skin[0] > view.lower) | (skin[1] < view.upper))))
-        lines.append(shades + (" Dots: lost if a skin covers the surface." if lost else ""))
+        lost = skin is not None and bool(np.any(view.held & ((skin[0] > view.lower) | (skin[1] < view.ceiling))))
+        lines.append(f"Pale shade: {marginal_words(view)}." + (" Dots: lost if a skin covers the surface." if lost else ""))
     return lines
 
 

@@ -24,7 +24,7 @@ _MONTHS: Final = (
 
 def add_report(group: "argparse._ArgumentGroup") -> None:
     """Add the option of a report."""
-    group.add_argument("--report", metavar="FILE", help="write a report to FILE.html or .md, to be printed and signed")
+    group.add_argument("--report", metavar="FILE", help="write a report to FILE.html or FILE.md")
 
 
 def refuse_unless_writable(file: str) -> None:

@@ -12,7 +12,9 @@ from containment.faces.screen import quantity_text
 from containment.faces.screen_liquid import liquid_screen
 from containment.faces.screen_window import mark_rows, window_title
 from containment.faces.window_view import WindowView, refuse_without_window, window_view
+from containment.given.vessel import Slot
 from containment.judgement.case import Case
+from containment.judgement.findings import Answer
 from containment.judgement.verdict import Verdict, holding_window
 
 if TYPE_CHECKING:
@@ -38,7 +40,11 @@ def view_of(case: Case, verdict: Verdict, *, against: str = "acceleration") -> W
             shape=case.waveform,
         )  # fmt: skip
     point = None if verdict.point is None else (verdict.point.frequency, verdict.point.acceleration)
-    return window_view(case, window, verdict.drive, against=against, point=point, margin_factor=verdict.margin_factor)
+    no_drive_asked = verdict.question == "minimum drive" or verdict.holds_unshaken
+    doubtful = isinstance(case.vessel, Slot) or (verdict.answer is Answer.MARGINAL and no_drive_asked)
+    return window_view(
+        case, window, verdict.drive, against=against, point=point, margin_factor=verdict.margin_factor, doubtful=doubtful
+    )
 
 
 def report_liquid(options: argparse.Namespace, case: Case, verdict: Verdict) -> None:

@@ -30,8 +30,8 @@ def window_screen(
     screen.heading("More")
     lines = [] if chart_file is None else [f"drawn to {chart_file}"]
     lines.append(
-        "edges of an ideal layer, exact within linear theory, joined from node to node; drag of the walls, a skin, tilt and "
-        "droplets are judged by 'containment liquid' at a drive point"
+        "edges of an ideal layer, exact within linear theory, joined from node to node; tilt, droplets and the uncertainty of "
+        "the properties are judged by 'containment liquid' at a drive point"
     )
     screen.listing(lines)
     return screen

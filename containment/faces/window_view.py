@@ -13,6 +13,7 @@ from containment.given.drive import DriveLimits
 from containment.given.vessel import Box
 from containment.given.waveforms import PURE_SINE, Waveform
 from containment.judgement.case import Case
+from containment.judgement.companions import dragged_layer
 from containment.judgement.limits import pull_off_acceleration
 from containment.judgement.rheology import depends_on_shear
 from containment.judgement.verdict import MARGIN_FACTOR
@@ -24,6 +25,7 @@ Real = npt.NDArray[np.float64]
 
 _NODES: Final = 201
 _SLOW_NODES: Final = 41
+_DRAG_NODES: Final = 17
 _MOST_DECADES: Final = 4.0
 
 
@@ -99,8 +101,12 @@ class WindowView:
         What the drive reaches (infinite where not stated), where the layer pulls off its base, and the end of the search.
     covered : tuple of two arrays, or None
         Edges if a skin covers the surface, where nobody has said whether it is clean.
+    dragged : array, shape (nodes,), or None
+        Lower edge with the drag of the side walls, between a few frequencies by its ratio to the ideal one.
     margin_factor : float
         Factor to the edges and to the pull-off below which a point is marginal.
+    doubtful : bool
+        Whether no point may be called held, however far from the edges: the verdict says why.
     corners : tuple of Mark
         Least acceleration, lowest frequency, largest margin; empty without a window.
     point : Mark or None
@@ -117,7 +123,9 @@ class WindowView:
     pull_off: Real
     searched: Real
     covered: tuple[Real, Real] | None
+    dragged: Real | None
     margin_factor: float
+    doubtful: bool
     corners: tuple[Mark, ...]
     point: Mark | None
     lowest: float
@@ -136,9 +144,12 @@ class WindowView:
 
     @property
     def safe(self) -> tuple[Real, Real]:
-        """Ends of what is held with the margin; empty where the first is not below the second."""
+        """Ends of what is held with the margin, drag of the walls and a skin counted; nothing where not low < high."""
+        low = (self.lower if self.dragged is None else np.maximum(self.lower, self.dragged)) * self.margin_factor
         high = np.minimum(np.minimum(self.upper, self.pull_off) / self.margin_factor, self.ceiling)
-        return self.lower * self.margin_factor, high
+        if self.covered is not None:
+            low, high = np.maximum(low, self.covered[0]), np.minimum(high, self.covered[1])
+        return (np.full_like(low, np.inf), high) if self.doubtful else (low, high)
 
     def stretches(self) -> list[tuple[int, int]]:
         """Return first and last node of every stretch of frequencies over which the window is open."""
@@ -193,6 +204,7 @@ def window_view(
     against: str = "acceleration",
     point: tuple[float, float] | None = None,
     margin_factor: float = MARGIN_FACTOR,
+    doubtful: bool = False,
     nodes: int | None = None,
 ) -> WindowView:
     """Return the view of a window.
@@ -211,6 +223,8 @@ def window_view(
         Frequency (Hz) and peak acceleration (m/s^2) of the drive point.
     margin_factor : float
         Factor below which a point is marginal.
+    doubtful : bool
+        Whether no point may be called held.
     nodes : int, optional
         Number of frequencies; the corners' own frequencies come on top.
     """
@@ -245,8 +259,21 @@ def window_view(
     bottom, top = _ends(parts, [*corners, *([mark] if mark else [])])
     return WindowView(
         axis=axis, frequency=f, corners=corners, point=mark, lowest=bottom, highest=top, margin_factor=margin_factor,
-        covered=None if skin is None else (shown(skin.lower), shown(skin.upper)), **parts,
+        doubtful=doubtful, covered=None if skin is None else (shown(skin.lower), shown(skin.upper)),
+        dragged=None if slow else _dragged(case, f, edges.lower, parts["lower"]), **parts,
     )  # fmt: skip
+
+
+def _dragged(case: Case, f: Real, lower: Real, shown: Real) -> Real | None:
+    """Return the lower edge with the drag of the walls, in the unit shown; the ratio to the ideal one changes slowly."""
+    known = np.flatnonzero(np.isfinite(lower) & (lower > 0.0))
+    layer = dragged_layer(case) if len(known) else None
+    if layer is None:
+        return None
+    some = known[np.unique(np.linspace(0, len(known) - 1, _DRAG_NODES).round().astype(np.intp))]
+    ratio = np.array([case.lower_edge(float(f[i]), layer=layer) for i in some]) / lower[some]
+    result: Real = shown * np.interp(np.log(f), np.log(f[some]), np.maximum(ratio, 1.0))
+    return result
 
 
 def _corners(case: Case, window: HoldingWindow | None, axis: Axis) -> tuple[Mark, ...]:
