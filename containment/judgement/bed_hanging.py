@@ -21,6 +21,7 @@ FREE_FLOWING: Final = (
 )
 """The one sentence that a free-flowing bed upside-down gets."""
 
+_RAINS: Final = "grains of the lower face weigh more than their contacts bear: they rain off"
 _UNLOADED: Final = "each stroke may unload the arch that presses the plug against the wall"
 _SPALLS: Final = "the plug itself is carried, but pieces may break off below the arch that carries it"
 
@@ -46,7 +47,9 @@ def judge_pocket(case: BedCase) -> Judged:
     if better(answer, carried) is answer and answer is not Answer.NOT_HELD:
         return Judged(answer=answer, reason=reason, binding=binding.name, mechanisms=found)
     if case.material.free_flowing or face.answer is Answer.NOT_HELD:
-        return Judged(answer=Answer.NOT_HELD, reason=reason, binding=face.name, mechanisms=found, holding_time=0.0)
+        # the gas could stand in for the wall, but nothing stands in for the lower face
+        why = FREE_FLOWING if case.material.free_flowing else _RAINS
+        return Judged(answer=Answer.NOT_HELD, reason=why, binding=face.name, mechanisms=found, holding_time=0.0)
     if drop.answer is Answer.NOT_HELD:
         return Judged(
             answer=Answer.NOT_HELD, binding=drop.name, mechanisms=found, holding_time=0.0,
@@ -85,7 +88,7 @@ def _hanging(case: BedCase, plug: Mechanism, face: Mechanism, below: Mechanism) 
         return answer, case.shortfall(f"the {binding.name}", binding.ratio or 0.0), binding
     if binding is plug:
         return answer, "the powder is too weak for the wall to carry it: the plug slides out", plug
-    return answer, "grains of the lower face weigh more than their contacts bear: they rain off", face
+    return answer, _RAINS, face
 
 
 def _plug(case: BedCase) -> Mechanism:

@@ -12,6 +12,7 @@ import containment as ct
 from containment.given.grains import grains
 from containment.judgement.bed_hanging import FREE_FLOWING
 from containment.judgement.findings import Answer, exit_status
+from containment.physics.bed.trapped_gas import pocket_frequency
 
 ORDER = ["not held", "marginal", "held"]
 CUP = ct.Cylinder(diameter="70 mm", depth="50 mm")
@@ -195,6 +196,41 @@ def test_the_lower_face_weighs_more_when_shaken():
     assert shaken[-1].binding == "lower face of the bed"
 
 
+@pytest.mark.parametrize("setting", [dict(open_bottom=True), dict(pocket=0.05, dwell=0.1)])
+def test_the_reason_speaks_of_what_binds(setting):
+    """Too weak for the wall and for the lower face: in the tube the plug is named, under gas only the face decides."""
+    verdict = ct.assess_bed(powder(150.0, d50=6e-4, d90=1.5e-3), ct.Cylinder(diameter=0.3, depth=0.1), **setting)
+    assert verdict.answer is Answer.NOT_HELD
+    word = {"plug on the wall": "plug", "lower face of the bed": "lower face"}[verdict.binding]
+    assert word in verdict.reason
+    assert verdict.binding == ("plug on the wall" if "open_bottom" in setting else "lower face of the bed")
+
+
+@settings(max_examples=40, deadline=None)
+@given(st.floats(0.0, 0.79), st.floats(5.0, 300.0), st.floats(0.002, 0.3))
+def test_the_gas_gives_a_finite_answer_at_every_frequency(gamma, frequency, pocket):
+    """Exactly at the resonance of the bed on tight gas, and everywhere else."""
+    material = powder(400.0, d50=40e-6, wall_friction=0.1)
+    own = float(pocket_frequency(pocket=pocket, bulk_density=600.0, depth=0.08, ambient_pressure=101325.0))
+    for f in (own, frequency):
+        verdict = ct.assess_bed(material, WIDE, at(gamma, f) if gamma else None, pocket=pocket, dwell=0.1)
+        json.dumps(verdict.to_dict(), allow_nan=False)
+
+
+def test_stated_assumptions_follow_the_case():
+    def said(*args, **kwargs):
+        return " | ".join(ct.assess_bed(*args, **kwargs).assumptions)
+
+    one_size = ct.Grains(bulk_density=800.0, d50=5e-3)
+    assert "one grain diameter given" in said(one_size, CUP, outlet=2e-3)
+    assert "finer than 2 mm" in ct.assess_bed(one_size, CUP, outlet=2e-3).reason
+    assert "one grain diameter given" not in said(SAND, CUP, outlet=2e-3)
+    assert "restitution of a grain on the surface: 0.3, assumed" in said(SAND, CUP, at(2.0), freeboard=0.1)
+    assert "restitution of a grain on the surface: 0.5, as given" in said(SAND, CUP, at(2.0), freeboard=0.1, restitution=0.5)
+    assert "run-up" in said(SAND, CUP, at(2.0), freeboard=0.1) and "run-up" not in said(SAND, CUP, freeboard=0.1)
+    assert "weaken" in said(powder(), CUP, at(0.5), outlet=0.02) and "weaken" not in said(powder(), CUP, outlet=0.02)
+
+
 def test_drive_limits_count():
     drive = ct.DriveLimits(max_stroke="1 mm")
     verdict = ct.assess_bed(SAND, CUP, at(0.5, 5.0), freeboard=0.05, drive=drive)
@@ -287,6 +323,8 @@ def test_cautions_apply_and_have_reasons():
     assert not resting & {"noise", "hand-arm vibration", "static charge", "falling product", "segregation", "settling"}
     shaken = topics(SAND, CUP, at(3.0), freeboard=0.1)
     assert {"noise", "hand-arm vibration", "static charge", "segregation"} <= shaken
+    assert "thrown product" in topics(SAND, CUP, at(3.0), freeboard=0.001)
+    assert "thrown product" not in resting | topics(SAND, CUP, at(3.0), outlet=0.01)
     assert "falling product" in topics(SAND, CUP, outlet=0.01)
     assert "measure the cohesion" in topics(powder(), CUP, outlet=0.01)
     gravel = ct.Grains(bulk_density=1500.0, particle_density=2650.0, d50=5e-3)
