@@ -29,6 +29,9 @@ _PUBLIC: Final = {
     "assess": "containment.judgement.verdict",
     "holding_window": "containment.judgement.verdict",
     "HoldingWindow": "containment.judgement.window",
+    "StudyResult": "containment.studies.result",
+    "study": "containment.studies.study",
+    "sweep": "containment.studies.study",
 }
 
 __all__ = sorted(_PUBLIC)
@@ -45,6 +48,8 @@ if TYPE_CHECKING:
     from containment.judgement.bed_verdict import BedVerdict, assess_bed
     from containment.judgement.verdict import Verdict, assess, holding_window
     from containment.judgement.window import HoldingWindow
+    from containment.studies.result import StudyResult
+    from containment.studies.study import study, sweep
 
 
 def __getattr__(name: str) -> Any:

@@ -7,8 +7,8 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Any, Final
 
-from containment.study.distributions import Distribution
-from containment.study.inputs import INPUTS, SIZES
+from containment.studies.distributions import Distribution
+from containment.studies.inputs import INPUTS, SIZES
 
 __all__ = ["METHODS", "RESPONSES", "Axis", "Plan"]
 

@@ -8,9 +8,9 @@ from containment.errors import ContainmentError
 from containment.judgement.bed_verdict import BedVerdict
 from containment.judgement.findings import Answer, Limit
 from containment.judgement.result import Verdict
-from containment.study.building import assessed, bed_assessed
-from containment.study.plan import Plan
-from containment.study.points import GROWING, LOWER, UPPER
+from containment.studies.building import assessed, bed_assessed
+from containment.studies.plan import Plan
+from containment.studies.points import GROWING, LOWER, UPPER
 
 __all__ = ["judged_alone", "message_of"]
 

@@ -9,7 +9,7 @@ import numpy as np
 import numpy.typing as npt
 
 from containment.errors import InputError
-from containment.study.inputs import INPUTS, input_value
+from containment.studies.inputs import INPUTS, input_value
 
 __all__ = ["DISTRIBUTIONS", "Distribution", "distribution"]
 

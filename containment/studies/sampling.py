@@ -7,7 +7,7 @@ from typing import Any
 import numpy as np
 import numpy.typing as npt
 
-from containment.study.plan import Plan
+from containment.studies.plan import Plan
 
 __all__ = ["Cases", "cases_of", "draws_of"]
 
@@ -50,7 +50,7 @@ def cases_of(plan: Plan, start: int, stop: int) -> Cases:
 
     Examples
     --------
-    >>> from containment.study.plan_reading import plan_from
+    >>> from containment.studies.plan_reading import plan_from
     >>> plan = plan_from({
     ...     "fixed": {"name": "water", "cylinder": 0.07, "depth": 0.03},
     ...     "vary": {"acceleration": [100.0, 200.0], "frequency": [40.0, 50.0, 60.0]},

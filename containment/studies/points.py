@@ -20,7 +20,7 @@ from containment.judgement.companions import COVERED_LOWER, COVERED_UPPER, WALL_
 from containment.judgement.findings import Answer
 from containment.judgement.operating_point import growing_modes
 from containment.judgement.verdict import assess
-from containment.study.edge_values import EdgeValues
+from containment.studies.edge_values import EdgeValues
 
 __all__ = ["GROWING", "LOWER", "UPPER", "Judged", "judged_points"]
 

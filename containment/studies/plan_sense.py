@@ -4,8 +4,8 @@ from collections.abc import Collection
 from typing import Any
 
 from containment.errors import InputError
-from containment.study.inputs import SIZES, VESSEL_SHAPES
-from containment.study.plan import Plan
+from containment.studies.inputs import SIZES, VESSEL_SHAPES
+from containment.studies.plan import Plan
 
 __all__ = ["faults_of_sense"]
 

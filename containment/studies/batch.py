@@ -11,14 +11,14 @@ from containment.errors import ContainmentError
 from containment.given.waveforms import PURE_SINE
 from containment.judgement.case import Case, allowance
 from containment.judgement.verdict import _case as checked_case
-from containment.study.building import drive_of, liquid_of, margin_of, surroundings_of, vessel_of
-from containment.study.edge_values import EdgeValues, edges_in_parts
-from containment.study.inputs import SIZES, record_key
-from containment.study.lines import lines_of
-from containment.study.plan import COSTLY_RESPONSE, Plan
-from containment.study.points import Judged, judged_points
-from containment.study.sampling import Cases, cases_of
-from containment.study.single import judged_alone, message_of
+from containment.studies.building import drive_of, liquid_of, margin_of, surroundings_of, vessel_of
+from containment.studies.edge_values import EdgeValues, edges_in_parts
+from containment.studies.inputs import SIZES, record_key
+from containment.studies.lines import lines_of
+from containment.studies.plan import COSTLY_RESPONSE, Plan
+from containment.studies.points import Judged, judged_points
+from containment.studies.sampling import Cases, cases_of
+from containment.studies.single import judged_alone, message_of
 
 __all__ = ["Block", "evaluated_block"]
 

@@ -10,10 +10,10 @@ from typing import Any, Final
 import numpy as np
 
 from containment.errors import InputError
-from containment.study.distributions import Distribution, distribution
-from containment.study.inputs import input_value, inputs_of
-from containment.study.plan import COSTLY_RESPONSE, METHODS, RESPONSES, Axis, Plan
-from containment.study.plan_sense import faults_of_sense
+from containment.studies.distributions import Distribution, distribution
+from containment.studies.inputs import input_value, inputs_of
+from containment.studies.plan import COSTLY_RESPONSE, METHODS, RESPONSES, Axis, Plan
+from containment.studies.plan_sense import faults_of_sense
 
 __all__ = ["plan_from", "read_plan"]
 

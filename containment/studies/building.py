@@ -12,7 +12,7 @@ from containment.given.vessel import Annulus, Box, Cylinder, Slot, Unbounded, Ve
 from containment.given.waveforms import Waveform
 from containment.judgement.bed_verdict import BedVerdict, assess_bed
 from containment.judgement.verdict import MARGIN_FACTOR, Verdict, assess
-from containment.study.inputs import SIZES
+from containment.studies.inputs import SIZES
 
 __all__ = ["assessed", "bed_assessed", "drive_of", "liquid_of", "margin_of", "shape_of", "surroundings_of", "vessel_of"]
 
