@@ -11,7 +11,7 @@ from typing import Any, Final
 
 from containment.errors import InputError
 
-__all__ = ["SECTIONS", "add_case", "apply_case", "case_of", "save_case"]
+__all__ = ["SECTIONS", "add_case", "apply_case", "case_of", "remark", "save_case"]
 
 SCHEMA: Final = 1
 _LARGEST: Final = 1_000_000
@@ -201,6 +201,13 @@ def save_case(options: argparse.Namespace, remark: str) -> None:
     except (OSError, ValueError) as error:
         what = error.strerror if isinstance(error, OSError) else str(error)
         raise InputError(f"--save-case: {options.save_case!r} cannot be written: {what}") from error
+
+
+def remark(answer: str, reason: str) -> str:
+    """Return what a saved case says of its verdict."""
+    from importlib.metadata import version
+
+    return f"verdict when saved, by version {version('containment')}: {answer} ({reason})"
 
 
 def _from(folder: Path, file: str) -> str:

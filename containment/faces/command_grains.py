@@ -4,6 +4,7 @@ import argparse
 from typing import TYPE_CHECKING, Any, Final
 
 from containment.errors import InputError
+from containment.faces import case_file, report_file
 from containment.faces import options as shared
 
 if TYPE_CHECKING:
@@ -11,12 +12,13 @@ if TYPE_CHECKING:
 
 __all__ = ["add_arguments", "run"]
 
+_NAMES: Final = "a granular material of the property table, or custom"
 _SETTINGS: Final = ("freeboard", "outlet", "slot_outlet", "pocket")
 
 
 def add_arguments(parser: argparse.ArgumentParser) -> None:
     """Add the sub-command's options."""
-    parser.add_argument("name", metavar="NAME", help="granular material of the property table, or custom")
+    parser.add_argument_group("material").add_argument("name", metavar="NAME", nargs="?", help=_NAMES)
     group = parser.add_argument_group("setting (one)")
     group.add_argument("--freeboard", metavar="H", help="upright and open: height of the wall above the bed")
     group.add_argument("--outlet", metavar="DIAMETER", help="over a round outlet of a hopper or tube")
@@ -42,7 +44,8 @@ def add_arguments(parser: argparse.ArgumentParser) -> None:
     group.add_argument("--restitution", metavar="E", help="of a grain on the surface; default 0.3, shallow bed 0.9")
     group.add_argument("--margin", metavar="FACTOR", help="factor to a bound below which it is marginal; 2")
     group.add_argument("--ambient-pressure", metavar="P", help="absolute; default 101.325kPa")
-    shared.add_output(parser)
+    report_file.add_report(shared.add_output(parser))
+    case_file.add_case(parser)
 
 
 def _material_from(options: argparse.Namespace) -> "Grains":
@@ -92,6 +95,9 @@ def run(options: argparse.Namespace) -> int:
     from containment.judgement.bed_verdict import assess_bed
     from containment.judgement.findings import exit_status
 
+    if options.report is not None:
+        report_file.refuse_unless_writable(options.report)
+    case_file.apply_case(options, _NAMES)
     _refuse_what_a_bed_has_not(options)
     setting = _setting_from(options)
     factor = shared.quantity(options, "margin", "ratio", least=1.0, most=100.0)
@@ -109,10 +115,17 @@ def run(options: argparse.Namespace) -> int:
         margin_factor=BED_MARGIN if factor is None else factor,
         **setting,
     )
+    if options.report is not None:
+        from containment.faces.report_grains import report_grains
+
+        report_grains(options, verdict)
+    if options.save_case is not None:
+        case_file.save_case(options, case_file.remark(verdict.answer.value, verdict.reason))
     if options.json:
         import json
 
-        print(json.dumps(verdict.to_dict(), allow_nan=False, ensure_ascii=False, indent=2))
+        result = {**verdict.to_dict(), "case": case_file.case_of(options)}
+        print(json.dumps(result, allow_nan=False, ensure_ascii=False, indent=2))
     else:
         from containment.faces.screen_grains import grains_screen
 

@@ -14,8 +14,7 @@ if TYPE_CHECKING:
     from containment.judgement.verdict import Verdict
 
 __all__ = [
-    "NAMES", "add_arguments", "add_case_arguments", "add_liquid", "case_from", "liquid_from", "run", "saved_remark",
-    "verdict_from",
+    "NAMES", "add_arguments", "add_case_arguments", "add_liquid", "case_from", "liquid_from", "run", "verdict_from",
 ]  # fmt: skip
 
 ROOM_TEMPERATURE: Final = 293.15
@@ -199,13 +198,6 @@ def verdict_from(options: argparse.Namespace, *, ranges: bool = False) -> "Verdi
     )
 
 
-def saved_remark(verdict: "Verdict") -> str:
-    """Return what a saved case says of its verdict."""
-    from importlib.metadata import version
-
-    return f"verdict when saved, by version {version('containment')}: {verdict.answer.value} ({verdict.reason})"
-
-
 def run(options: argparse.Namespace) -> int:
     """Judge the case and print the verdict; return the exit status."""
     if options.report is not None:
@@ -219,7 +211,7 @@ def run(options: argparse.Namespace) -> int:
 
         report_liquid(options, case_from(options), verdict)
     if options.save_case is not None:
-        case_file.save_case(options, saved_remark(verdict))
+        case_file.save_case(options, case_file.remark(verdict.answer.value, verdict.reason))
     if options.json:
         import json
 

@@ -49,7 +49,7 @@ def run(options: argparse.Namespace) -> int:
     if options.report is not None:
         report_liquid(options, case, verdict)
     if options.save_case is not None:
-        case_file.save_case(options, command_liquid.saved_remark(verdict))
+        case_file.save_case(options, case_file.remark(verdict.answer.value, verdict.reason))
     if options.chart is not None:
         from containment.faces.picture_file import save_picture
         from containment.faces.picture_window import draw_window
