@@ -8,6 +8,7 @@ from containment.judgement.bed_case import BedCase, Judged, Mechanism, better, w
 from containment.judgement.bed_face import lower_face, powder_below_arch
 from containment.judgement.bed_upright import QUIET_GAMMA
 from containment.judgement.findings import Answer, seconds_text
+from containment.physics.bed.below_arch import shallow_factor
 from containment.physics.bed.permeability import permeability, reynolds_number
 from containment.physics.bed.powder_group import powder_group
 from containment.physics.bed.trapped_gas import pocket_swing, sink_velocity, sudden_drop, support_time
@@ -87,6 +88,9 @@ def _hanging(case: BedCase, plug: Mechanism, face: Mechanism, below: Mechanism) 
             return answer, _UNLOADED, plug
         return answer, case.shortfall(f"the {binding.name}", binding.ratio or 0.0), binding
     if binding is plug:
+        share = float(shallow_factor(depth=case.vessel.depth, span=case.vessel.narrowest or math.inf))
+        if share < 1.0 and (plug.ratio or 0.0) >= share:  # a deep bed would be carried
+            return answer, "the bed is too shallow for an arch that would carry it between the walls", plug
         return answer, "the powder is too weak for the wall to carry it: the plug slides out", plug
     return answer, _RAINS, face
 
@@ -105,9 +109,14 @@ def _plug(case: BedCase) -> Mechanism:
             bulk_density=material.bulk_density, gamma=case.gamma, perimeter_ratio=around, gravity=STANDARD_GRAVITY
         )
     )
+    span = case.vessel.narrowest or math.inf
+    share = float(shallow_factor(depth=case.vessel.depth, span=span))
+    strength *= share
     ratio = strength / load
     answer = Answer.NOT_HELD if material.free_flowing else case.graded(ratio)
     remark = "free-flowing: nothing presses it against the wall" if material.free_flowing else "weight times 1 + Gamma"
+    if share < 1.0 and not material.free_flowing:
+        remark += f"; the bed is too shallow for a full arch, which bears {share:.3g} of it"
     if case.gamma > QUIET_GAMMA and not material.free_flowing:
         # the wall's friction lives on the thrust of the arch, which a bed without weight for part of a stroke has not
         answer = worse(answer, Answer.MARGINAL)

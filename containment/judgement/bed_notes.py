@@ -118,6 +118,10 @@ def bed_assumptions(case: BedCase, *, moisture: float | None = None) -> tuple[st
     if kind in ("open_bottom", "pocket"):
         lines.append("what holds is the strength of the powder and the friction of the wall; no lid, no cloth, no grid below")
         lines.append("the plug is whole, from wall to wall, without cracks; its lower face is flat")
+        if material.sources.get("wall_friction") not in (None, "given by the user"):
+            lines.append(
+                f"wall friction {material.wall_friction:.3g} is a typical one from the table: measure it against the wall in hand"
+            )
     if kind == "pocket":
         lines.append(
             f"gas-tight above the bed, air at 20 degC, {1e-3 * case.ambient_pressure:.4g} kPa; no channels; the bed may sink "

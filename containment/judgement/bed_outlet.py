@@ -1,5 +1,6 @@
 """Judgement of a bed over an outlet: too coarse to pass, arched by cohesion, arched by chance, or pouring."""
 
+import math
 from typing import Final
 
 from containment.constants import STANDARD_GRAVITY
@@ -8,6 +9,7 @@ from containment.judgement.bed_face import BELOW_ARCH, lower_face, powder_below_
 from containment.judgement.bed_upright import QUIET_GAMMA
 from containment.judgement.findings import Answer, seconds_text
 from containment.physics.bed.arching import ARCH_RATIO, grains_before_arch, lasting_arch_outlet, passes_outlet
+from containment.physics.bed.below_arch import shallow_factor
 from containment.physics.bed.cohesion import arch_outlet, arch_shape_factor
 from containment.physics.bed.discharge import SHAKEN_FACTOR, discharge_rate, slot_discharge_rate
 
@@ -55,6 +57,9 @@ def _why_lost(case: BedCase, weakest: Mechanism, chance: Mechanism, flow: Mechan
             return weakest, "the arch would bear the load, but coarse grains rain from its lower face"
         if (weakest.ratio or 0.0) >= 1.0:
             return weakest, "the bed lands on its arch in each stroke, and the arch has too little in hand for that shock"
+        share = float(shallow_factor(depth=case.vessel.depth, span=case.setting.size or math.inf))
+        if share < 1.0 and (weakest.ratio or 0.0) >= share:  # a deep bed would arch
+            return weakest, "the bed is too shallow for an arch that would bear it over so wide an outlet"
         return weakest, "the outlet is wider than the powder can arch over"
     if float(lasting_arch_outlet(diameter=case.material.d10)) > (case.setting.size or 0.0) > 0.0:
         return chance, "each stroke unloads the grains' arch and breaks it" if _round(case) else (
@@ -99,18 +104,21 @@ def _cohesive_arch(case: BedCase) -> Mechanism:
             shape_factor=factor, gravity=STANDARD_GRAVITY,
         )
     )  # fmt: skip
-    ratio = span / size
+    share = float(shallow_factor(depth=case.vessel.depth, span=size))
+    ratio = share * span / size
     answer = Answer.NOT_HELD
     remark = f"H = {factor:g}; weight times 1 + Gamma"
+    if share < 1.0:
+        remark += f"; the bed is too shallow for a full arch, which bears {share:.3g} of it"
     if material.free_flowing:
         remark = "free-flowing: no strength to arch with"
     else:
         answer = case.graded(ratio)
         if case.gamma > QUIET_GAMMA:  # a shock of unknown size: nothing less than the full margin may still count
             answer = Answer.MARGINAL if ratio >= case.strength_margin else Answer.NOT_HELD
-            remark = f"above Gamma {QUIET_GAMMA:g} the bed may lift and land on the arch; that shock is not covered"
+            remark += f"; above Gamma {QUIET_GAMMA:g} the bed may lift and land on the arch; that shock is not covered"
     return Mechanism(
-        name=_ARCH, answer=answer, value=size, bound=span, unit="m", ratio=ratio,
+        name=_ARCH, answer=answer, value=size, bound=share * span, unit="m", ratio=ratio,
         source="Jenike 1964, textbook form read; shaken: force balance", remark=remark,
     )  # fmt: skip
 

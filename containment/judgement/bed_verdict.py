@@ -308,7 +308,9 @@ def _largest_outlet(case: BedCase, judge: Callable[[BedCase], Judged], judged: J
         named = {m.name: m for m in judged.mechanisms}
         plug, face, below = named["plug on the wall"], named["lower face of the bed"], named[BELOW_ARCH]
         if face.answer is Answer.HELD and plug.ratio and not case.material.free_flowing:
-            # both grow with the width of the tube
-            ratio = min(plug.ratio / case.strength_margin, math.inf if below.ratio is None else below.ratio)
-            return case.vessel.narrowest * ratio
+            width, deep = case.vessel.narrowest, 2.0 * case.vessel.depth
+            # both loads grow with the width of the tube; the plug's strength falls with it once the bed is shallow for it
+            full = width * plug.ratio / case.strength_margin * max(1.0, width / deep)
+            widest = full if full <= deep else math.sqrt(full * deep)
+            return min(widest, width * (math.inf if below.ratio is None else below.ratio))
     return None

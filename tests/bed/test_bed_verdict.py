@@ -149,6 +149,29 @@ def test_largest_open_tube_is_where_the_answer_changes():
         assert ct.assess_bed(powder(1500.0), tube, at(0.4), open_bottom=True).held is held
 
 
+@pytest.mark.parametrize("setting", [dict(open_bottom=True), dict(outlet=0.07)])
+def test_a_crust_is_no_arch(setting):
+    """A bed far shallower than its span: a factor of 7 and more in a deep bed, a fortieth of that in one of 1 mm."""
+    deep, crust = (ct.assess_bed(powder(2000.0), ct.Cylinder(diameter=0.07, depth=h), **setting) for h in (0.05, 0.001))
+    assert deep.held and crust.answer is Answer.NOT_HELD and "too shallow" in crust.reason
+    name = deep.binding
+    ratios = [next(m.ratio for m in v.mechanisms if m.name == name) for v in (deep, crust)]
+    assert ratios[1] == pytest.approx(ratios[0] * 2 * 0.001 / 0.07)
+
+
+@pytest.mark.parametrize("depth", [0.003, 0.02, 0.3])
+def test_largest_opening_counts_the_depth(depth):
+    wide = ct.Cylinder(diameter=2.0, depth=depth)
+    size = ct.assess_bed(powder(1500.0), wide, outlet=0.001).largest_outlet
+    assert ct.assess_bed(powder(1500.0), wide, outlet=size * 0.999).held
+    assert not ct.assess_bed(powder(1500.0), wide, outlet=size * 1.001).held
+    for start in (0.01, 0.5):
+        size = ct.assess_bed(powder(1500.0), ct.Cylinder(diameter=start, depth=depth), open_bottom=True).largest_outlet
+        for factor, held in ((0.999, True), (1.001, False)):
+            tube = ct.Cylinder(diameter=size * factor, depth=depth)
+            assert ct.assess_bed(powder(1500.0), tube, open_bottom=True).held is held
+
+
 def test_gas_support_is_limited_in_time():
     # coarse enough not to be a cohesive powder of group C, so that its support can count; wide vessel: no plug
     material = powder(400.0, d50=40e-6, wall_friction=0.1)
@@ -228,6 +251,8 @@ def test_stated_assumptions_follow_the_case():
     assert "restitution of a grain on the surface: 0.3, assumed" in said(SAND, CUP, at(2.0), freeboard=0.1)
     assert "restitution of a grain on the surface: 0.5, as given" in said(SAND, CUP, at(2.0), freeboard=0.1, restitution=0.5)
     assert "run-up" in said(SAND, CUP, at(2.0), freeboard=0.1) and "run-up" not in said(SAND, CUP, freeboard=0.1)
+    flour = grains("wheat flour", yield_strength="700 Pa")
+    assert "wall friction" in said(flour, CUP, open_bottom=True) and "wall friction" not in said(flour, CUP, outlet=0.01)
     assert "weaken" in said(powder(), CUP, at(0.5), outlet=0.02) and "weaken" not in said(powder(), CUP, outlet=0.02)
 
 

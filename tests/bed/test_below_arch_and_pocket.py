@@ -8,7 +8,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.integrate import solve_ivp
 
-from containment.physics.bed.below_arch import arch_rise, hanging_stress
+from containment.physics.bed.below_arch import arch_rise, hanging_stress, shallow_factor
 from containment.physics.bed.trapped_gas import carrying_drop, pocket_swing, sudden_drop
 
 G = 9.80665
@@ -32,6 +32,16 @@ def test_hanging_stress_by_hand_and_scaling():
     for name in ("thickness", "bulk_density", "gravity"):
         assert float(hanging_stress(**base | {name: 2 * base[name]})) == pytest.approx(2 * float(hanging_stress(**base)))
     assert float(hanging_stress(**base | {"gamma": 2.0})) == pytest.approx(2 * float(hanging_stress(**base)))
+
+
+def test_shallow_factor_by_search():
+    """Least stress of a three-hinged arch over all rises inside the bed, against that of a deep slot, rho g B."""
+    for depth in (0.002, 0.01, 0.03):
+        rise = np.linspace(0.01, 0.99, 9801) * depth
+        least = (depth * 0.08**2 / (8.0 * rise * (depth - rise))).min()
+        assert float(shallow_factor(depth=depth, span=0.08)) == pytest.approx(0.08 / least, rel=1e-6)
+    assert float(shallow_factor(depth=0.04, span=0.08)) == float(shallow_factor(depth=9.0, span=0.08)) == 1.0
+    assert float(shallow_factor(depth=0.02, span=0.16)) == pytest.approx(float(shallow_factor(depth=0.01, span=0.08)))
 
 
 @pytest.mark.parametrize("depth", [0.001, 0.05, 1.0, 8.0])

@@ -1,13 +1,14 @@
-r"""What hangs below an arch: an arch bends upwards between its supports, and the powder under it has to hang from it.
+r"""What an arch needs around it: a bed deep enough to hold it, and powder under it that hangs by itself.
 
 A bed whose lower face is flat does not end at its arch. The lens between arch and face is carried by tension, however
-strong the arch is; where the tension is too much, pieces break off until the face has the shape of the arch.
+strong the arch is; where the tension is too much, pieces break off until the face has the shape of the arch. In a bed
+that is shallow for its span the arch has to be flat and thin, and bears less.
 """
 
 import numpy as np
 import numpy.typing as npt
 
-__all__ = ["arch_rise", "hanging_stress"]
+__all__ = ["arch_rise", "hanging_stress", "shallow_factor"]
 
 Real = npt.NDArray[np.float64]
 Values = float | Real
@@ -69,4 +70,31 @@ def hanging_stress(*, thickness: Values, bulk_density: Values, gamma: Values, gr
     """
     load = np.asarray(bulk_density, np.float64) * gravity * (1.0 + np.asarray(gamma, np.float64))
     result: Real = load * np.asarray(thickness, np.float64)
+    return result
+
+
+def shallow_factor(*, depth: Values, span: Values) -> Real:
+    """Return the share of its load that an arch still bears in a bed of limited depth: 2 depth/span, at most 1.
+
+    Parameters
+    ----------
+    depth, span : array_like
+        Of the bed, m; between the supports, m.
+
+    Notes
+    -----
+    An arch of rise f and thickness t that carries a bed of depth h over the span B is pressed by rho g h B^2/(8 f t). With
+    f + t = h that is least for f = t = h/2: rho g B^2/(2 h), which exceeds the rho g B of a deep slot below h = B/2. The
+    same share is taken for a round opening.
+
+    References
+    ----------
+    Three-hinged arch, textbook statics.
+
+    Examples
+    --------
+    >>> float(shallow_factor(depth=0.01, span=0.08)), float(shallow_factor(depth=0.05, span=0.08))
+    (0.25, 1.0)
+    """
+    result: Real = np.minimum(1.0, 2.0 * np.asarray(depth, np.float64) / np.asarray(span, np.float64))
     return result

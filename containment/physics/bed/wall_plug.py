@@ -94,7 +94,8 @@ def plug_load(*, bulk_density: Values, gamma: Values, perimeter_ratio: Values, g
 
     Notes
     -----
-    For a tube of diameter D: 4 tau_w/D = rho_b (1 + Gamma) g. It does not depend on the length of the plug.
+    For a tube of diameter D: 4 tau_w/D = rho_b (1 + Gamma) g. It does not depend on the length of the plug, as long as
+    that is at least half the width (see `below_arch.shallow_factor`).
 
     References
     ----------
