@@ -120,7 +120,7 @@ def bed_assumptions(case: BedCase, *, moisture: float | None = None) -> tuple[st
         lines.append("the plug is whole, from wall to wall, without cracks; its lower face is flat")
         if material.sources.get("wall_friction") not in (None, "given by the user"):
             lines.append(
-                f"wall friction {material.wall_friction:.3g} is a typical one from the table: measure it against the wall in hand"
+                f"wall friction {material.wall_friction:.3g} is a typical one from the table: measure it on your wall"
             )
     if kind == "pocket":
         lines.append(
