@@ -1,6 +1,6 @@
 """The holding window drawn with characters: plain ASCII, one colour, any width from 60 columns."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from typing import Final
 
 import numpy as np
@@ -61,8 +61,13 @@ def window_chart(view: WindowView, *, width: int = 76, height: int = 20) -> list
     return _framed(field, view, x, y)
 
 
-def window_signs(view: WindowView) -> list[tuple[str, str]]:
-    """Return the signs that the chart uses and what they mean, marks apart."""
+def window_signs(view: WindowView, chart: Sequence[str]) -> list[tuple[str, str]]:
+    """Return the signs that are drawn in the lines of a chart and what they mean, marks apart."""
+    field = "".join(line[_LABEL + 2 :] for line in chart[1:-3])
+    return [(sign, words) for sign, words in _signs(view) if sign in field]
+
+
+def _signs(view: WindowView) -> list[tuple[str, str]]:
     ceiling, held = view.ceiling, view.held
     signs = []
     if held.any():

@@ -35,6 +35,13 @@ class _Parser(argparse.ArgumentParser):
 
 def main(arguments: Sequence[str] | None = None) -> int:
     """Run the command line and return its exit status."""
+    try:
+        return _main(arguments)
+    except KeyboardInterrupt:
+        return 130
+
+
+def _main(arguments: Sequence[str] | None) -> int:
     arguments = list(sys.argv[1:] if arguments is None else arguments)
     chosen = arguments[0] if arguments else ""
     parser = _Parser(
@@ -97,8 +104,6 @@ def _run(module: str, options: argparse.Namespace) -> int:
     except ContainmentError as error:
         sys.stderr.write(f"containment: {_one_line(str(error))}\n")
         return 2
-    except KeyboardInterrupt:
-        return 130
     except BrokenPipeError:
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing more can be said to a closed pipe
         return 141

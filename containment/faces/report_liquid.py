@@ -87,8 +87,9 @@ def _window(page: ReportPage, case: Case, verdict: Verdict, *, drawn: bool) -> N
         return
     page.heading("Holding window")
     page.text(title)
-    page.preformatted("\n".join(window_chart(view, width=78, height=20)))
-    page.rows([list(row) for row in window_signs(view)])
+    chart = window_chart(view, width=78, height=20)
+    page.preformatted("\n".join(chart))
+    page.rows([list(row) for row in window_signs(view, chart)])
     page.blocks.append(Table([list(row) for row in mark_rows(view, verdict)], (2, 3, 4)))
 
 

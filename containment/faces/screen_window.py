@@ -17,8 +17,9 @@ def window_screen(
     screen.verdict(verdict.answer, *headline(verdict))
     screen.heading("Holding window")
     screen.text(window_title(verdict))
-    screen.text("\n".join(["", *window_chart(view, width=screen.width - 4, height=18 if screen.width < 100 else 24)]))
-    screen.rows(window_signs(view))
+    chart = window_chart(view, width=screen.width - 4, height=18 if screen.width < 100 else 24)
+    screen.text("\n".join(["", *chart]))
+    screen.rows(window_signs(view, chart))
     marks = mark_rows(view, verdict)
     if marks:
         screen.heading("Points")

@@ -24,7 +24,7 @@ __all__ = ["AXES", "Axis", "Mark", "WindowView", "refuse_without_window", "windo
 Real = npt.NDArray[np.float64]
 
 _NODES: Final = 201
-_SLOW_NODES: Final = 41
+_SLOW_NODES: Final = 31
 _DRAG_NODES: Final = 17
 _MOST_DECADES: Final = 4.0
 
