@@ -18,11 +18,12 @@ import numpy.typing as npt
 
 from containment.errors import NotComputableError
 from containment.physics.crossings import first_crossing, refined
-from containment.physics.exclusion import BoundedLayer, Floor, matters, not_excluded
+from containment.physics.exclusion import BoundedLayer, Floor, layer_of, matters, not_excluded
 from containment.physics.hill import Half, rows_needed
 from containment.physics.wavenumbers import Spectrum
 
-__all__ = ["AMPLITUDE_BOUND", "Edges", "edge_errors", "extreme", "first_roots", "hold_edges", "matters", "nodes_up_to"]
+__all__ = ["AMPLITUDE_BOUND", "Edges", "edge_errors", "extreme", "first_roots", "hold_edges", "likely_breaker", "matters",
+           "nodes_up_to"]  # fmt: skip
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
@@ -118,7 +119,7 @@ def first_roots(
                 break
             size //= 2
         first += len(part)
-        half = Half.of(layer, k[part], w[part], growth, count, subharmonic=subharmonic)
+        half = Half.of(layer_of(layer, part), k[part], w[part], growth, count, subharmonic=subharmonic)
         begin = half.root_free_below() if start is None else start[part]
         near = np.flatnonzero(begin < stop[part])
         if len(near):
@@ -252,7 +253,7 @@ def _wavenumber_nodes(
     for _ in range(40):
         k = nodes_up_to(spectrum, reach, min(capillary, 1.0 / depth))
         if len(some):
-            best, size = _likely_breaker(layer, k, w[some], growth)
+            best, size = likely_breaker(layer, k, w[some], growth)
             stop = np.minimum(cap[some], 4.0 * size)
             root = first_roots(layer, k[best], w[some], growth, stop, subharmonic=True)
             better = root < breaks[some]
@@ -272,7 +273,7 @@ def _wavenumber_nodes(
     )
 
 
-def _likely_breaker(
+def likely_breaker(
     layer: BoundedLayer, k: Real, w: Real, growth: float
 ) -> tuple[npt.NDArray[np.intp], Real]:
     """Return for each frequency a wavenumber near the first subharmonic resonance and the size of its A_0."""

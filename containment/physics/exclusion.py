@@ -1,12 +1,13 @@
 """Which cases need no evaluation: proven floors of the coefficients, and what Worpitzky's theorem makes of them."""
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Protocol, Self
 
 import numpy as np
 import numpy.typing as npt
 
-__all__ = ["BoundedLayer", "Floor", "matters", "not_excluded"]
+__all__ = ["BoundedLayer", "Floor", "layer_of", "matters", "not_excluded"]
 
 Real = npt.NDArray[np.float64]
 Complex = npt.NDArray[np.complex128]
@@ -40,6 +41,12 @@ class BoundedLayer(Protocol):
     def smallest_coefficient(self, wavenumber: npt.ArrayLike) -> Real:
         """Return a lower bound of abs(A) over Re s >= 0."""
         ...
+
+
+def layer_of(layer: BoundedLayer, chosen: npt.NDArray[np.intp]) -> BoundedLayer:
+    """Return the layer of chosen cases: the same for all, or, of a `LayerStack`, which has one a case, theirs."""
+    take: Callable[[npt.NDArray[np.intp]], BoundedLayer] | None = getattr(layer, "take", None)
+    return layer if take is None else take(chosen)
 
 
 def matters(layer: BoundedLayer, k: Real, w: Real, acceleration: Real) -> Flags:
@@ -124,12 +131,13 @@ def not_excluded(
         second, third, fourth = (floor.at(here, (n + shift) * wl) for n in (1, 2, 3))
         real = second
         if evaluated >= 2:
-            exact = layer.coefficient(growth + 1j * (1.0 + shift) * wl, kl)
+            mine = layer_of(layer, left)
+            exact = mine.coefficient(growth + 1j * (1.0 + shift) * wl, kl)
             second, real = np.abs(exact), exact.real
             if subharmonic:
-                first = np.abs(layer.coefficient(growth + 1j * shift * wl, kl))
+                first = np.abs(mine.coefficient(growth + 1j * shift * wl, kl))
         if evaluated >= 3:
-            third = np.maximum(third, np.abs(layer.coefficient(growth + 1j * (2.0 + shift) * wl, kl)))
+            third = np.maximum(third, np.abs(mine.coefficient(growth + 1j * (2.0 + shift) * wl, kl)))
         with np.errstate(divide="ignore"):
             t = np.where(third > 0.0, 2.0 * a2 / third, np.inf)
         gap = second - t

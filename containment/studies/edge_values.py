@@ -5,8 +5,9 @@ That is: with the drag of the walls, under a skin, at the corners of the stated 
 
 import dataclasses
 import math
-from collections.abc import Iterator, Sequence
+from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
+from typing import Final
 
 import numpy as np
 import numpy.typing as npt
@@ -16,12 +17,17 @@ from containment.given.liquid import Liquid
 from containment.judgement.case import Case
 from containment.judgement.companions import dragged_layer, tilt_modes
 from containment.physics.edges import Edges, first_roots
+from containment.physics.edges_of_many import LayerStack, edges_of_many, lower_edges_of_many
 from containment.physics.layers import LayerModel
+from containment.physics.wall_drag import DraggedLayer
 
 __all__ = ["EdgeValues", "edges_in_parts", "edges_of_case"]
 
 Real = npt.NDArray[np.float64]
 Flags = npt.NDArray[np.bool_]
+
+_FEW_FREQUENCIES: Final = 8
+"""Frequencies a layer up to which many layers go side by side rather than one after the other with all its frequencies."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -140,19 +146,94 @@ def edges_in_parts(
     frequency : array, shape (points,)
         Hz.
     """
-    for i in range(len(cases)):
-        mine = np.flatnonzero(which == i)
-        if not len(mine):
-            continue
-        try:
-            yield mine, edges_of_case(cases[i], frequency[mine])
-        except (ContainmentError, ArithmeticError, ValueError):  # one frequency spoils the others: each for itself
-            for f in np.unique(frequency[mine]):
-                at = mine[frequency[mine] == f]
-                try:
-                    yield at, edges_of_case(cases[i], frequency[at])
-                except (ContainmentError, ArithmeticError, ValueError) as error:
-                    yield at, error
+    for group in _side_by_side(cases, which, frequency):
+        mine = np.flatnonzero(np.isin(which, group))
+        if len(group) > 1:
+            try:
+                yield mine, edges_of_cases(cases, which[mine], frequency[mine])
+                continue
+            except (ContainmentError, ArithmeticError, ValueError):
+                pass  # one layer spoils the others: each for itself
+        for i in group:
+            mine = np.flatnonzero(which == i)
+            try:
+                yield mine, edges_of_case(cases[i], frequency[mine])
+            except (ContainmentError, ArithmeticError, ValueError):  # one frequency spoils the others: each for itself
+                for f in np.unique(frequency[mine]):
+                    at = mine[frequency[mine] == f]
+                    try:
+                        yield at, edges_of_case(cases[i], frequency[at])
+                    except (ContainmentError, ArithmeticError, ValueError) as error:
+                        yield at, error
+
+
+def _side_by_side(cases: Sequence[Case], which: npt.NDArray[np.intp], frequency: Real) -> list[list[int]]:
+    """Return which layers go through the physics side by side: those that meet few frequencies each."""
+    used = [int(i) for i in np.unique(which)]
+    around = cases[0].surroundings
+    alone = [[i] for i in used]
+    if around.below is not None or around.tilt:
+        return alone
+    pairs = len(np.unique(np.stack([which, frequency]), axis=1).T)
+    if pairs > _FEW_FREQUENCIES * len(used):
+        return alone
+    groups: dict[int, list[int]] = {}
+    for i in used:
+        groups.setdefault(len(corner_cases(cases[i])), []).append(i)
+    return list(groups.values())
+
+
+def edges_of_cases(cases: Sequence[Case], which: npt.NDArray[np.intp], frequency: Real) -> EdgeValues:
+    """Return the edges of many layers that differ in their liquid, at points of given layer and frequency.
+
+    Raises
+    ------
+    NotComputableError
+        See `containment.physics.edges_of_many.edges_of_many`.
+    """
+    pairs, at = np.unique(np.stack([which.astype(np.float64), frequency]), axis=1, return_inverse=True)
+    mine = [cases[int(i)] for i in pairs[0]]
+    f = pairs[1]
+    first = mine[0]
+    around, growth, bound = first.surroundings, first.allowance.growth, first.amplitude_bound
+
+    def found(layers: Sequence[Case], film: float | None) -> Edges:
+        stack = _stack(layers, film)
+        return edges_of_many(
+            stack, first.spectrum, f, growth=growth, amplitude_bound=bound,
+            capillary_wavenumber=np.array([case.capillary_wavenumber for case in layers]),
+        )  # fmt: skip
+
+    film = math.inf if around.surface == "covered" else None if around.surface == "clean" else around.film_modulus
+    edges = found(mine, film)
+    none = np.full(len(f), np.nan)
+    covered = found(mine, math.inf) if asks_for_skin(first) else Edges(f, none, none, none, none, none)
+    drag_layer = dragged_layer(first)
+    dragged = none
+    if isinstance(drag_layer, DraggedLayer):
+        dragged = lower_edges_of_many(
+            _stack(mine, None, drag_layer.wall_factor), first.spectrum, f, growth=growth, amplitude_bound=bound,
+            capillary_wavenumber=np.array([case.capillary_wavenumber for case in mine]),
+        )  # fmt: skip
+    # the same liquid at several frequencies has the same corners
+    corner_of = {int(i): corner_cases(cases[int(i)]) for i in np.unique(which)}
+    corners = []
+    for c in range(len(corner_of[int(pairs[0][0])])):
+        edge = found([corner_of[int(i)][c] for i in pairs[0]], film)
+        corners.append((edge.lower, edge.upper))
+    at = np.ravel(at)
+    return EdgeValues(edges.lower, edges.upper, dragged, covered.lower, covered.upper, corners).take(at)
+
+
+def _stack(
+    layers: Sequence[Case], film_modulus: float | None, wall_factor: Callable[[Real], Real] | None = None
+) -> LayerStack:
+    return LayerStack(
+        density=np.array([case.liquid.density for case in layers]),
+        viscosity=np.array([case.liquid.viscosity for case in layers]),
+        surface_tension=np.array([case.liquid.surface_tension for case in layers]),
+        depth=layers[0].vessel.depth, film_modulus=film_modulus, wall_factor=wall_factor,
+    )  # fmt: skip
 
 
 def asks_for_skin(case: Case) -> bool:

@@ -156,7 +156,7 @@ class Plan:
         if self.question == "minimum drive":
             return 4
         if self.proven or COSTLY_RESPONSE in self.responses:
-            return 16
+            return 32
         inner = math.prod(len(axis) for axis in self.axes if axis.depth_of_loop >= INPUTS["frequency"].depth_of_loop)
         if self.uncertain or inner < 256:
             return 256

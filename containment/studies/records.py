@@ -71,7 +71,7 @@ class RecordFile:
         try:
             # without a buffer: what could not be written must not be tried again later
             self._file = open(  # noqa: SIM115
-                os.open(self.path, os.O_RDWR | os.O_CREAT | getattr(os, "O_BINARY", 0)), "r+b", buffering=0
+                os.open(self.path, os.O_RDWR | os.O_CREAT | getattr(os, "O_BINARY", 0), 0o666), "r+b", buffering=0
             )
         except OSError as error:
             raise StudyFileError(f"--out: {str(self.path)!r} cannot be opened: {error.strerror}") from error
