@@ -11,7 +11,9 @@ import containment as ct
 DIAMETERS = (40.0, 55.0, 70.0)  # mm, invented
 DEPTH = "25 mm"
 FLUID = ct.Liquid(density="1.26 g/cm**3", viscosity="1.4 Pa*s", surface_tension="64 mN/m", name="damping fluid (invented)")
-SHAKER = ct.DriveLimits(max_stroke="25 mm", max_velocity="1.8 m/s", max_acceleration="70 g_n", frequency_range=("20 Hz", "200 Hz"))
+SHAKER = ct.DriveLimits(
+    max_stroke="25 mm", max_velocity="1.8 m/s", max_acceleration="70 g_n", frequency_range=("20 Hz", "200 Hz")
+)
 FACTOR = 1.25
 
 
@@ -31,7 +33,7 @@ def main() -> None:
         point = ct.Motion(frequency=float(frequencies[best]), acceleration=float(need[best]))
         verdict = ct.assess(FLUID, vessel, point, dwell="60 s", margin_factor=1.2)
         print(
-            f"{diameter:3.0f} mm    {frequencies[best]:6.1f} Hz  {need[best] / 9.80665:8.1f} g_n  {stroke:5.2f} mm peak to peak, "
+            f"{diameter:3.0f} mm    {frequencies[best]:6.1f} Hz  {need[best] / 9.80665:8.1f} g_n  {stroke:5.2f} mm p-p, ",
             f"{verdict.answer.value}: {verdict.reason}"
         )
 
