@@ -9,6 +9,7 @@ from typing import TYPE_CHECKING, Any, Final
 import numpy as np
 import numpy.typing as npt
 
+from containment.constants import ABSOLUTE_ZERO_CELSIUS, STANDARD_GRAVITY
 from containment.errors import InputError
 from containment.faces.picture_style import COLOURS, INK, entitle, halo, new_picture, tidy_log_axis
 
@@ -16,12 +17,21 @@ if TYPE_CHECKING:
     from matplotlib.axes import Axes
     from matplotlib.figure import Figure
 
-__all__ = ["MapPoints", "draw_verdict_map", "map_points"]
+__all__ = ["MapPoints", "draw_study_map", "draw_verdict_map", "map_points"]
 
 Real = npt.NDArray[np.float64]
 
 _ORDER: Final = ("not held", "marginal", "held")
 _MOST_SIGNS: Final = 2500
+_LOGARITHMIC_FROM: Final = 8.0
+
+_SUFFIXES: Final = {
+    # ending of a key: (unit shown, factor, offset)
+    "_Pa_s": ("Pa s", 1.0, 0.0), "_kg_m3": ("kg/m^3", 1.0, 0.0), "_N_m": ("mN/m", 1e3, 0.0),
+    "_m_s2": ("g_n", 1.0 / STANDARD_GRAVITY, 0.0), "_m_s": ("m/s", 1.0, 0.0), "_Hz": ("Hz", 1.0, 0.0),
+    "_Pa": ("kPa", 1e-3, 0.0), "_kg": ("kg", 1.0, 0.0), "_rad": ("deg", 180.0 / math.pi, 0.0),
+    "_K": ("degC", 1.0, ABSOLUTE_ZERO_CELSIUS), "_m": ("mm", 1e3, 0.0), "_N": ("N", 1.0, 0.0), "_s": ("s", 1.0, 0.0),
+}  # fmt: skip
 
 
 class MapPoints:
@@ -58,7 +68,8 @@ def map_points(file: str | Path, *, x: str, y: str, answer: str = "verdict") -> 
     Parameters
     ----------
     file : path
-        One JSON object a line; lines that lack one of the three are counted and left out (a header, a failed case).
+        One JSON object a line. Cases with an input but without an answer (failed ones) are counted and left out; a header,
+        which has no inputs, is not counted.
     x, y, answer : str
         Where the inputs and the answer stand in an object, with points between levels, such as ``inputs.viscosity``.
 
@@ -82,7 +93,7 @@ def map_points(file: str | Path, *, x: str, y: str, answer: str = "verdict") -> 
                 values = (_at(record, x), _at(record, y), _at(record, answer))
                 if _is_number(values[0]) and _is_number(values[1]) and values[2] in _ORDER:
                     found.append((float(values[0]), float(values[1]), values[2]))
-                else:
+                elif any(value is not None for value in values):
                     left_out += 1
     except (OSError, UnicodeDecodeError) as error:
         raise InputError(f"{path.name}: cannot be read: {error}") from error
@@ -90,6 +101,40 @@ def map_points(file: str | Path, *, x: str, y: str, answer: str = "verdict") -> 
         raise InputError(f"{path.name}: no case has {x}, {y} and {answer}; expected numbers under the first two")
     xs, ys, answers = zip(*found, strict=True)
     return MapPoints(xs, ys, answers, left_out)
+
+
+def draw_study_map(file: str | Path, *, x: str, y: str, title: str = "") -> "Figure":
+    """Return the map of a study's file over two of its inputs, in trade units, by the keys of its records.
+
+    Parameters
+    ----------
+    file : path
+        JSON lines of a study.
+    x, y : str
+        Keys with their SI unit, such as ``frequency_Hz`` and ``acceleration_m_s2``.
+    title : str
+        Set above.
+    """
+    points = map_points(file, x=x, y=y)
+    labels, logarithmic = [], []
+    for name, axis in ((x, "x"), (y, "y")):
+        words, unit, factor, offset = _read_key(name)
+        values = getattr(points, axis) * factor + offset
+        setattr(points, axis, values)
+        labels.append(f"{words} [{unit}]" if unit else words)
+        logarithmic.append(bool(values.min() > 0.0 and values.max() > _LOGARITHMIC_FROM * values.min()))
+    return draw_verdict_map(
+        points, x_label=labels[0], y_label=labels[1], title=title, logarithmic=(logarithmic[0], logarithmic[1])
+    )
+
+
+def _read_key(name: str) -> tuple[str, str, float, float]:
+    """Return the words of a key, its trade unit, and what turns SI into it."""
+    last = name.rpartition(".")[2]
+    for ending, (unit, factor, offset) in _SUFFIXES.items():
+        if last.endswith(ending):
+            return last.removesuffix(ending).replace("_", " "), unit, factor, offset
+    return last.replace("_", " "), "", 1.0, 0.0
 
 
 def _is_number(value: Any) -> bool:
