@@ -56,7 +56,7 @@ def report_liquid(options: argparse.Namespace, case: Case, verdict: Verdict) -> 
     rest, page.blocks = page.blocks, []
     page.blocks.append(rest[0])
     assert isinstance(rest[0], VerdictBox)
-    _window(page, case, verdict, drawn=drawn)
+    _window(page, options, case, verdict, drawn=drawn)
     page.blocks += rest[1:]
     if drawn:
         _pictures(page, case, verdict)
@@ -71,7 +71,9 @@ def report_liquid(options: argparse.Namespace, case: Case, verdict: Verdict) -> 
     write_report(page, options.report)
 
 
-def _window(page: ReportPage, case: Case, verdict: Verdict, *, drawn: bool) -> None:
+def _window(
+    page: ReportPage, options: argparse.Namespace, case: Case, verdict: Verdict, *, drawn: bool
+) -> None:
     try:
         view = view_of(case, verdict)
     except ContainmentError:  # the limits and assumptions say what is not modelled
@@ -87,6 +89,8 @@ def _window(page: ReportPage, case: Case, verdict: Verdict, *, drawn: bool) -> N
         return
     page.heading("Holding window")
     page.text(title)
+    if options.report.lower().endswith((".html", ".htm")):
+        page.text("Drawn with characters: the pictures of this report need matplotlib (extra: plot), which is not installed.")
     chart = window_chart(view, width=78, height=20)
     page.preformatted("\n".join(chart))
     page.rows([list(row) for row in window_signs(view, chart)])

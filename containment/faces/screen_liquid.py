@@ -228,12 +228,14 @@ def _at_rest(screen: Screen, verdict: Verdict) -> None:
     if rest.growth_rate == 0.0:
         screen.text("The surface tension alone holds a flat surface that meets the wall at 90 degrees.")
         return
-    assert rest.wavenumber is not None and rest.time_to_spill is not None
-    mode = spectrum_of(verdict.vessel).mode_name(rest.wavenumber)
+    assert rest.time_to_spill is not None
+    mode = ""
+    if rest.wavenumber is not None:  # a pinned layer's modes are sums of many wavenumbers
+        mode = spectrum_of(verdict.vessel).mode_name(rest.wavenumber) + ", "
     screen.rows(
         [
             ("spills after", f"about {seconds_text(rest.time_to_spill)}"),
-            ("fastest mode", f"{mode}, e-fold in {seconds_text(1.0 / rest.growth_rate)}"),
+            ("fastest mode", f"{mode}e-fold in {seconds_text(1.0 / rest.growth_rate)}"),
         ]
     )
 
