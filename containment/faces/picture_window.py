@@ -71,7 +71,7 @@ def _lost_under_a_skin(axes: "Axes", view: WindowView) -> None:
     assert view.covered is not None
     f, lower, ceiling = view.frequency, np.maximum(view.lower, view.lowest), np.minimum(view.ceiling, view.highest)
     style: dict[str, Any] = {
-        "facecolor": "none", "edgecolor": INK, "hatch": "....", "linewidth": 0, "alpha": 0.45, "zorder": 1.2,
+        "facecolor": "none", "edgecolor": INK, "hatch": "////", "linewidth": 0, "alpha": 0.45, "zorder": 1.2,
     }  # fmt: skip
     low = np.minimum(view.covered[0], ceiling)
     axes.fill_between(f, lower, low, where=(view.held & (low > lower)).tolist(), **style)
@@ -134,7 +134,7 @@ def _key(view: WindowView) -> list[str]:
             lines.append(f"Dark shade: {held_words(view)}.")
         skin = view.covered
         lost = skin is not None and bool(np.any(view.held & ((skin[0] > view.lower) | (skin[1] < view.ceiling))))
-        lines.append(f"Pale shade: {marginal_words(view)}." + (" Dots: lost if a skin covers the surface." if lost else ""))
+        lines.append(f"Pale shade: {marginal_words(view)}." + (" Hatched: lost if a skin covers the surface." if lost else ""))
     return lines
 
 

@@ -119,7 +119,7 @@ class ReportPage(Screen):
         """Add the table of limits, with their sources."""
         rows = [
             [
-                limit.name, "ok" if limit.ok else "PASSED", quantity_text(limit.value, limit.unit),
+                limit.name, "ok" if limit.ok else "NOT MET", quantity_text(limit.value, limit.unit),
                 quantity_text(limit.bound, limit.unit), f"x {limit.ratio:.3g}" if limit.ratio is not None else "",
             ]
             for limit in limits

@@ -143,7 +143,7 @@ class Screen:
         """Add the table of limits."""
         rows = [
             (
-                "ok" if limit.ok else "PASSED",
+                "ok" if limit.ok else "NOT MET",
                 limit.name,
                 quantity_text(limit.value, limit.unit),
                 "bound " + quantity_text(limit.bound, limit.unit),

@@ -224,7 +224,7 @@ def assess_bed(
     broken = [limit for limit in limits if not limit.ok]
     answer, reason, binding = judged.answer, judged.reason, judged.binding
     if broken and answer is not Answer.NOT_HELD:
-        answer, reason, binding = Answer.NOT_HELD, f"the limit is passed: {broken[0].name}", broken[0].name
+        answer, reason, binding = Answer.NOT_HELD, f"a limit is not met: {broken[0].name}", broken[0].name
     return BedVerdict(
         answer=answer,
         question="minimum drive" if motion is None else "operating point",

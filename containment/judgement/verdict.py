@@ -263,7 +263,7 @@ def _at_a_point(case: Case, motion: Motion, drive: DriveLimits, factor: float, *
     elif point.growing_modes:
         answer, reason = Answer.NOT_HELD, f"a mode grows, answering at {unit}"
     elif broken:
-        answer, reason = Answer.NOT_HELD, f"the limit is passed: {broken[0].name}"
+        answer, reason = Answer.NOT_HELD, f"a limit is not met: {broken[0].name}"
     elif not point.proven:
         answer, reason = Answer.MARGINAL, "no growing mode was found, but that none was missed is not proven"
     elif min(below, above) < factor:
