@@ -51,6 +51,11 @@ def _main(arguments: Sequence[str] | None) -> int:
         formatter_class=HelpFormatter,
     )
     parser.add_argument("--version", action="version", version=_version(chosen))
+    if chosen in ("--completion", "--help", "-h") or chosen.startswith("--completion="):
+        from containment.faces.completion import Completion
+
+        parser.add_argument("--completion", metavar="SHELL", action=Completion, commands=SUBCOMMANDS,
+                            help="print a completion script for bash, zsh or fish")  # fmt: skip
     commands = parser.add_subparsers(dest="command", metavar="COMMAND", required=True)
     for name, (module, line) in SUBCOMMANDS.items():
         sub = commands.add_parser(

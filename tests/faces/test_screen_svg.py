@@ -16,7 +16,9 @@ def lines_of(svg):
     return ["".join(text.itertext()).replace("\u00a0", " ") for text in ET.fromstring(svg).iter(f"{SVG}text")]
 
 
-@pytest.mark.parametrize("text", ["HELD: it stays\n\nCASE\n  a < b & c  d", "NOT HELD: <b>x</b> [red]\n  1   2", "no verdict at all"])
+@pytest.mark.parametrize(
+    "text", ["HELD: it stays\n\nCASE\n  a < b & c  d", "NOT HELD: <b>x</b> [red]\n  1   2", "no verdict at all"]
+)
 def test_every_line_is_there_as_it_was(text):
     assert lines_of(screen_svg(text)) == [line for line in text.split("\n") if line]
 
