@@ -210,7 +210,9 @@ class RecordFile:
 
 def _whole_record(line: bytes, number: int) -> list[str] | None:
     """Return how a record counts, or None where it is not the whole record of case `number`."""
-    if not line.startswith(b'{"i":%d,' % number) or not line.endswith(b"}\n"):
+    if not line.endswith(b"}\n"):
+        return None
+    if not line.startswith(b'{"i":%d,' % number):
         return _good_elsewhere(line)
     try:
         return verdicts_of(line)

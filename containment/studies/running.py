@@ -22,6 +22,8 @@ _WAITING_PER_WORKER: Final = 4
 """Blocks that are handed out ahead of need, so that no worker waits for the next one."""
 _MOST_DEATHS: Final = 3
 """Times that workers may die on a block before the study gives up on it."""
+_PATIENCE: Final = 10
+"""Seconds for the scheduler of a cluster to answer."""
 _THREADS: Final = ("OPENBLAS_NUM_THREADS", "OMP_NUM_THREADS", "MKL_NUM_THREADS")
 
 
@@ -200,7 +202,7 @@ def dask_executor(address: str) -> tuple[Executor, int, Callable[[], None]]:
     except ImportError as error:
         raise StudyError("--scheduler: needs dask.distributed; pip install 'containment[cluster]'") from error
     try:
-        client = distributed.Client(address, timeout=10, set_as_default=False)
+        client = distributed.Client(address, timeout=_PATIENCE, set_as_default=False)
     except (OSError, ValueError, TimeoutError) as error:
         raise StudyError(f"--scheduler: {address[:80]!r} does not answer: {' '.join(str(error).split())[:200]}") from error
     threads = sum(client.nthreads().values())
