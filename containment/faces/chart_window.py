@@ -8,6 +8,7 @@ import numpy.typing as npt
 
 from containment.faces.chart_axes import LogAxis
 from containment.faces.window_view import WindowView
+from containment.judgement.findings import seconds_text
 
 __all__ = ["CORNER_SIGNS", "POINT_SIGN", "held_words", "marginal_words", "window_chart", "window_signs"]
 
@@ -94,7 +95,8 @@ def held_words(view: WindowView) -> str:
     parts = (("drag of the walls", view.dragged), ("a skin", view.covered))
     counted = [name for name, part in parts if part is not None]
     also = f", {' and '.join(counted)} counted" if counted else ""
-    return f"held: a factor of {view.margin_factor:g} or more from every edge{also}"
+    span = "held" if view.dwell is None else f"held for {seconds_text(view.dwell)}"
+    return f"{span}: a factor of {view.margin_factor:g} or more from every edge{also}"
 
 
 def marginal_words(view: WindowView) -> str:

@@ -47,7 +47,9 @@ table { border-collapse: collapse; width: 100%; margin: .3rem 0 .6rem; font-vari
 td, th { text-align: left; vertical-align: top; padding: .22rem .7rem .22rem 0; border-bottom: 1px solid #eceef0;
   font-weight: 400; }
 thead th { color: #4a5058; font-size: .85rem; border-bottom-color: #c9ced4; }
-tbody th { width: 24%; color: #22262b; } table.headed tbody th { width: 48%; }
+tbody th { width: 24%; max-width: 14rem; color: #22262b; overflow-wrap: break-word; }
+table.headed tbody th { width: 48%; max-width: 24rem; }
+@media (max-width: 36rem) { table { font-size: .84rem; } td.n, th.n { white-space: normal; } }
 table.short { break-inside: avoid; }
 td.n, th.n { text-align: right; white-space: nowrap; }
 tr { break-inside: avoid; }

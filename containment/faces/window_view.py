@@ -107,6 +107,8 @@ class WindowView:
         Factor to the edges and to the pull-off below which a point is marginal.
     doubtful : bool
         Whether no point may be called held, however far from the edges: the verdict says why.
+    dwell : float or None
+        Time for which it holds, s; None for ever.
     corners : tuple of Mark
         Least acceleration, lowest frequency, largest margin; empty without a window.
     point : Mark or None
@@ -126,6 +128,7 @@ class WindowView:
     dragged: Real | None
     margin_factor: float
     doubtful: bool
+    dwell: float | None
     corners: tuple[Mark, ...]
     point: Mark | None
     lowest: float
@@ -259,7 +262,7 @@ def window_view(
     bottom, top = _ends(parts, [*corners, *([mark] if mark else [])])
     return WindowView(
         axis=axis, frequency=f, corners=corners, point=mark, lowest=bottom, highest=top, margin_factor=margin_factor,
-        doubtful=doubtful, covered=None if skin is None else (shown(skin.lower), shown(skin.upper)),
+        doubtful=doubtful, dwell=case.allowance.dwell, covered=None if skin is None else (shown(skin.lower), shown(skin.upper)),
         dragged=None if slow else _dragged(case, f, edges.lower, parts["lower"]), **parts,
     )  # fmt: skip
 
