@@ -13,12 +13,12 @@ from containment.judgement.window import HoldingPoint
 __all__ = ["headline", "liquid_screen", "vessel_text"]
 
 
-def _stroke(frequency: float, acceleration: float) -> str:
-    return f"{2e3 * acceleration / (2.0 * math.pi * frequency) ** 2:.3g} mm peak to peak"
+def _stroke(frequency: float, acceleration: float, factor: float) -> str:
+    return f"{2e3 * factor * acceleration / (2.0 * math.pi * frequency) ** 2:.3g} mm peak to peak"
 
 
-def _drive_point(frequency: float, acceleration: float) -> str:
-    return f"{frequency:.4g} Hz and {quantity_text(acceleration, 'm/s^2')} ({_stroke(frequency, acceleration)})"
+def _drive_point(frequency: float, acceleration: float, factor: float) -> str:
+    return f"{frequency:.4g} Hz and {quantity_text(acceleration, 'm/s^2')} ({_stroke(frequency, acceleration, factor)})"
 
 
 def headline(verdict: Verdict) -> tuple[str, str, str]:
@@ -28,7 +28,7 @@ def headline(verdict: Verdict) -> tuple[str, str, str]:
     span = "" if time is None else f" for {seconds_text(time)}"
     if verdict.question == "operating point":
         assert verdict.point is not None
-        at = _drive_point(verdict.point.frequency, verdict.point.acceleration)
+        at = _drive_point(verdict.point.frequency, verdict.point.acceleration, verdict.amplitude_factor)
         if verdict.answer is Answer.HELD and not verdict.point.strictly_inside:
             word = f"HELD FOR {seconds_text(time or 0.0).upper()}, NOT FOR EVER"
             return word, f"{name} stays in the upside-down vessel for that time at {at}, and falls later", verdict.reason
@@ -51,7 +51,7 @@ def headline(verdict: Verdict) -> tuple[str, str, str]:
     assert verdict.window is not None and verdict.window.minimum_acceleration is not None
     least = verdict.window.minimum_acceleration
     word = "CAN BE HELD" if time is None else f"CAN BE HELD FOR {seconds_text(time).upper()}"
-    start = _drive_point(least.frequency, least.acceleration)
+    start = _drive_point(least.frequency, least.acceleration, verdict.amplitude_factor)
     return word, f"shaking keeps {name} in the upside-down vessel, from {start}", verdict.reason
 
 

@@ -37,6 +37,8 @@ class Verdict:
         Where the layer would be held: without a drive point, or with one that does not hold.
     held_over : HeldOver or None
         Ranges of viscosity and temperature over which the drive point holds, where asked for.
+    amplitude_factor : float
+        Half the stroke times w^2 over the peak acceleration of the motion: 1 for a sine.
     drives_that_could : tuple of DriveChoice
         Generic classes of drives that could hold the layer, where no drive is stated.
     """
@@ -64,6 +66,7 @@ class Verdict:
     worst_mode: str
     held_over: HeldOver | None = None
     drives_that_could: tuple[DriveChoice, ...] = ()
+    amplitude_factor: float = 1.0
 
     @property
     def held(self) -> bool:
@@ -126,7 +129,7 @@ class Verdict:
             result["operating_point"] = {
                 "frequency_Hz": point.frequency,
                 "acceleration_m_s2": point.acceleration,
-                "amplitude_m": point.acceleration / (2.0 * math.pi * point.frequency) ** 2,
+                "amplitude_m": self.amplitude_factor * point.acceleration / (2.0 * math.pi * point.frequency) ** 2,
                 "lower_acceleration_m_s2": _finite(point.lower),
                 "upper_acceleration_m_s2": _finite(point.upper),
                 "lower_relative_error": _finite(point.lower_error),

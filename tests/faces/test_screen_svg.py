@@ -8,7 +8,7 @@ import pytest
 
 from containment.faces.screen_svg import screen_svg
 
-DOCS = Path(__file__).parents[2] / "docs"
+DOCS = Path(__file__).parents[2] / "examples" / "pictures"
 SVG = "{http://www.w3.org/2000/svg}"
 
 
@@ -35,5 +35,5 @@ def test_picture_in_the_documents_is_what_the_tool_prints():
     module = importlib.util.module_from_spec(spec)
     spec.loader.exec_module(module)
     shown = lines_of((DOCS / "window_screen.svg").read_text(encoding="utf-8"))
-    assert lines_of(module.screen_picture()) == shown, "run: python docs/make_pictures.py"
+    assert lines_of(module.screen_picture()) == shown, "run: python examples/pictures/make_pictures.py"
     ET.parse(DOCS / "window.svg")

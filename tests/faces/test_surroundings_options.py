@@ -111,3 +111,11 @@ def test_bad_surroundings_are_one_line(more, capsys):
     captured = capsys.readouterr()
     assert status == 2 and not captured.out
     assert captured.err.count("\n") == 1
+
+
+def test_stroke_of_a_crank_is_the_stroke_that_was_asked_for(capsys):
+    more = [*SYRUP, *CUP, "--frequency", "50Hz", "--stroke", "8mm", "--crank-ratio", "0.25"]
+    main(more)
+    assert "8 mm peak to peak" in capsys.readouterr().out.replace("\n", " ")
+    main([*more, "--json"])
+    assert json.loads(capsys.readouterr().out)["operating_point"]["amplitude_m"] == pytest.approx(0.004, rel=1e-3)

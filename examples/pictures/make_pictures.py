@@ -1,4 +1,4 @@
-"""Make the pictures of the README with the tool itself: python docs/make_pictures.py."""
+"""Make the pictures of the README with the tool itself: python examples/pictures/make_pictures.py."""
 
 import contextlib
 import io
