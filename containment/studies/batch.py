@@ -153,7 +153,7 @@ def _as_arrays(
     some, f, a = some[good], f[good], a[good]
     if not len(some):
         return True
-    for at, edges in edges_in_parts(liquids, which[some], f):
+    for at, edges in edges_in_parts(liquids, which[some], f, a):
         if isinstance(edges, Exception):
             _fail(errors, some[at], edges)
             continue

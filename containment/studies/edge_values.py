@@ -7,7 +7,7 @@ import dataclasses
 import math
 from collections.abc import Callable, Iterator, Sequence
 from dataclasses import dataclass
-from typing import Final
+from typing import Any, Final
 
 import numpy as np
 import numpy.typing as npt
@@ -66,7 +66,7 @@ class EdgeValues:
         )  # fmt: skip
 
     def spans(self, acceleration: Real) -> Flags:
-        """Return which points leave the window at some corner of the uncertainty."""
+        """Return which points leave the window at some corner of the uncertainty, of those that are between the edges."""
         found = np.zeros(len(acceleration), dtype=bool)
         for low, high in self.corners:
             found |= ~((low < acceleration) & (acceleration < high))
@@ -104,8 +104,10 @@ class TiltedModes:
         return result
 
 
-def edges_of_case(case: Case, frequency: Real) -> EdgeValues:
-    """Return the edges of one layer at points of given frequencies, each frequency solved once.
+def edges_of_case(case: Case, frequency: Real, acceleration: Real) -> EdgeValues:
+    """Return the edges of one layer at points of given frequencies and accelerations, each frequency solved once.
+
+    What lies beside the edges is found only where some point is between them: elsewhere it changes nothing.
 
     Raises
     ------
@@ -114,26 +116,50 @@ def edges_of_case(case: Case, frequency: Real) -> EdgeValues:
     """
     f, at = np.unique(frequency, return_inverse=True)
     edges = case.edges(f)
-    none = np.full(len(f), np.nan)
+    some = _between(edges, at, acceleration)
+    fs = f[some]
+    beside = _Beside(len(f), some)
     drag_layer = dragged_layer(case)
-    dragged = none if drag_layer is None else _lower_edges(case, f, drag_layer)
-    covered = Edges(f, none, none, none, none, none) if asks_for_skin(case) is False else case.edges(
-        f, layer=case.layer_with(surface="covered")
-    )  # fmt: skip
-    corners = [
-        (found.lower, found.upper) for corner in corner_cases(case) for found in [corner.edges(f)]
-    ]
+    dragged = beside.of(lambda: _lower_edges(case, fs, drag_layer) if drag_layer else None)
+    covered = beside.pair(lambda: case.edges(fs, layer=case.layer_with(surface="covered")) if asks_for_skin(case) else None)
+    corners = [beside.pair(corner.edges, fs) for corner in corner_cases(case)]
     tilt = None
     if case.surroundings.tilt:
         waves, heights = tilt_modes(case)
         if len(waves):
             lowers = np.stack([case.lower_roots(float(x), waves) for x in f])
             tilt = TiltedModes(case.surroundings.tilt, case.vessel.depth, case, waves, heights, lowers)
-    return EdgeValues(edges.lower, edges.upper, dragged, covered.lower, covered.upper, corners, tilt).take(at)
+    return EdgeValues(edges.lower, edges.upper, dragged, *covered, corners, tilt).take(at)
+
+
+def _between(edges: Edges, at: npt.NDArray[np.intp], acceleration: Real) -> npt.NDArray[np.intp]:
+    """Return the frequencies at which some point lies between the edges."""
+    inside = (edges.lower[at] < acceleration) & (acceleration < edges.upper[at])
+    return np.unique(at[inside])
+
+
+@dataclass(frozen=True, slots=True)
+class _Beside:
+    """Values that are found for some of many entries; not-a-number for the others, and where there is nothing to find."""
+
+    count: int
+    some: npt.NDArray[np.intp]
+
+    def of(self, find: Callable[[], Real | None]) -> Real:
+        whole = np.full(self.count, np.nan)
+        if len(self.some) and (found := find()) is not None:
+            whole[self.some] = found
+        return whole
+
+    def pair(self, find: Callable[..., Edges | None], *arguments: Any) -> tuple[Real, Real]:
+        found = find(*arguments) if len(self.some) else None
+        return (
+            self.of(lambda: None if found is None else found.lower), self.of(lambda: None if found is None else found.upper)
+        )  # fmt: skip
 
 
 def edges_in_parts(
-    cases: Sequence[Case], which: npt.NDArray[np.intp], frequency: Real
+    cases: Sequence[Case], which: npt.NDArray[np.intp], frequency: Real, acceleration: Real
 ) -> Iterator[tuple[npt.NDArray[np.intp], "EdgeValues | Exception"]]:
     """Yield the points of layers, in parts, with their edges or with what kept these from being computed.
 
@@ -143,26 +169,26 @@ def edges_in_parts(
         Layers that share vessel, surroundings and allowance.
     which : array of int, shape (points,)
         The layer of each point.
-    frequency : array, shape (points,)
-        Hz.
+    frequency, acceleration : array, shape (points,)
+        Hz and peak m/s^2.
     """
     for group in _side_by_side(cases, which, frequency):
         mine = np.flatnonzero(np.isin(which, group))
         if len(group) > 1:
             try:
-                yield mine, edges_of_cases(cases, which[mine], frequency[mine])
+                yield mine, edges_of_cases(cases, which[mine], frequency[mine], acceleration[mine])
                 continue
             except (ContainmentError, ArithmeticError, ValueError):
                 pass  # one layer spoils the others: each for itself
         for i in group:
             mine = np.flatnonzero(which == i)
             try:
-                yield mine, edges_of_case(cases[i], frequency[mine])
+                yield mine, edges_of_case(cases[i], frequency[mine], acceleration[mine])
             except (ContainmentError, ArithmeticError, ValueError):  # one frequency spoils the others: each for itself
                 for f in np.unique(frequency[mine]):
                     at = mine[frequency[mine] == f]
                     try:
-                        yield at, edges_of_case(cases[i], frequency[at])
+                        yield at, edges_of_case(cases[i], frequency[at], acceleration[at])
                     except (ContainmentError, ArithmeticError, ValueError) as error:
                         yield at, error
 
@@ -183,8 +209,10 @@ def _side_by_side(cases: Sequence[Case], which: npt.NDArray[np.intp], frequency:
     return list(groups.values())
 
 
-def edges_of_cases(cases: Sequence[Case], which: npt.NDArray[np.intp], frequency: Real) -> EdgeValues:
-    """Return the edges of many layers that differ in their liquid, at points of given layer and frequency.
+def edges_of_cases(
+    cases: Sequence[Case], which: npt.NDArray[np.intp], frequency: Real, acceleration: Real
+) -> EdgeValues:
+    """Return the edges of many layers that differ in their liquid, at points of given layer; see `edges_of_case`.
 
     Raises
     ------
@@ -192,37 +220,38 @@ def edges_of_cases(cases: Sequence[Case], which: npt.NDArray[np.intp], frequency
         See `containment.physics.edges_of_many.edges_of_many`.
     """
     pairs, at = np.unique(np.stack([which.astype(np.float64), frequency]), axis=1, return_inverse=True)
-    mine = [cases[int(i)] for i in pairs[0]]
-    f = pairs[1]
+    at = np.ravel(at)
+    mine, f = [cases[int(i)] for i in pairs[0]], pairs[1]
     first = mine[0]
-    around, growth, bound = first.surroundings, first.allowance.growth, first.amplitude_bound
+    around = first.surroundings
+    common: dict[str, Any] = {"growth": first.allowance.growth, "amplitude_bound": first.amplitude_bound}
 
-    def found(layers: Sequence[Case], film: float | None) -> Edges:
-        stack = _stack(layers, film)
-        return edges_of_many(
-            stack, first.spectrum, f, growth=growth, amplitude_bound=bound,
-            capillary_wavenumber=np.array([case.capillary_wavenumber for case in layers]),
-        )  # fmt: skip
+    def found(layers: Sequence[Case], at_f: Real, film: float | None) -> Edges:
+        waves = np.array([case.capillary_wavenumber for case in layers])
+        return edges_of_many(_stack(layers, film), first.spectrum, at_f, capillary_wavenumber=waves, **common)
 
     film = math.inf if around.surface == "covered" else None if around.surface == "clean" else around.film_modulus
-    edges = found(mine, film)
-    none = np.full(len(f), np.nan)
-    covered = found(mine, math.inf) if asks_for_skin(first) else Edges(f, none, none, none, none, none)
+    edges = found(mine, f, film)
+    some = _between(edges, at, acceleration)
+    few, fs = [mine[i] for i in some], f[some]
+    beside = _Beside(len(f), some)
     drag_layer = dragged_layer(first)
-    dragged = none
-    if isinstance(drag_layer, DraggedLayer):
-        dragged = lower_edges_of_many(
-            _stack(mine, None, drag_layer.wall_factor), first.spectrum, f, growth=growth, amplitude_bound=bound,
-            capillary_wavenumber=np.array([case.capillary_wavenumber for case in mine]),
-        )  # fmt: skip
-    # the same liquid at several frequencies has the same corners
-    corner_of = {int(i): corner_cases(cases[int(i)]) for i in np.unique(which)}
-    corners = []
-    for c in range(len(corner_of[int(pairs[0][0])])):
-        edge = found([corner_of[int(i)][c] for i in pairs[0]], film)
-        corners.append((edge.lower, edge.upper))
-    at = np.ravel(at)
-    return EdgeValues(edges.lower, edges.upper, dragged, covered.lower, covered.upper, corners).take(at)
+
+    def drag() -> Real | None:
+        if not isinstance(drag_layer, DraggedLayer):
+            return None
+        waves = np.array([case.capillary_wavenumber for case in few])
+        stack = _stack(few, None, drag_layer.wall_factor)
+        return lower_edges_of_many(stack, first.spectrum, fs, capillary_wavenumber=waves, **common)
+
+    dragged = beside.of(drag)
+    covered = beside.pair(lambda: found(few, fs, math.inf) if asks_for_skin(first) else None)
+    at_corners = [corner_cases(case) for case in few]
+    corners = [
+        beside.pair(found, [corner[c] for corner in at_corners], fs, film)
+        for c in range(len(at_corners[0]) if few else 0)
+    ]
+    return EdgeValues(edges.lower, edges.upper, dragged, *covered, corners).take(at)
 
 
 def _stack(
