@@ -124,7 +124,8 @@ def _notes(result: StudyResult) -> list[str]:
             "prove the cases that you rely on with containment liquid"
         )
     if plan.uncertain:
-        notes.append("held includes the margin to the edges on top of the uncertainties drawn; margin = 1 in the plan drops it")
+        if plan.fixed.get("margin") != 1.0:
+            notes.append("held includes the margin to the edges on top of what is drawn; margin = 1 in the plan drops it")
         if plan.method != "random":
             notes.append(f"the interval is that of independent draws; for {plan.method} draws it is an estimate")
     if counts["error"]:
